@@ -1,0 +1,1 @@
+"""Engine logbook: readings become efficiency, bound, gap and excess."""

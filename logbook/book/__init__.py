@@ -1,0 +1,1 @@
+"""The append-only, chained book, drafts and kept figures."""

@@ -1,0 +1,1 @@
+"""Import with a column map, exports."""

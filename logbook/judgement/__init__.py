@@ -1,0 +1,1 @@
+"""Figures, reference, trend: what the readings carry and what they do not."""

@@ -1,0 +1,1 @@
+"""Renderers of the monthly summary."""

@@ -1,0 +1,1 @@
+"""One file a pane, one stylesheet, the terminal driver."""

@@ -1,0 +1,1 @@
+"""Formulas in SI, floats and arrays alike, no input or output."""

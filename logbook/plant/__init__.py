@@ -1,0 +1,1 @@
+"""What is installed: readings catalogue, plant.toml as frozen records, units."""

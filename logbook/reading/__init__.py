@@ -1,0 +1,1 @@
+"""Typed text to value or state; typing test, counters, ship time, spans."""
