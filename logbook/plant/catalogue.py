@@ -90,17 +90,17 @@ def parse_span(text: str) -> Span | None:
 def catalogue() -> Mapping[str, ReadingDefinition]:
     """All points of the package, by key, in the order of the file."""
     points: dict[str, ReadingDefinition] = {}
-    with files("logbook.plant").joinpath("catalogue.csv").open(encoding="utf-8", newline="") as stream:
-        for row in csv.DictReader(stream):
-            spans = {
-                kind: span
-                for kind, column in (
-                    ("two-stroke", "span_two_stroke"),
-                    ("four-stroke", "span_four_stroke"),
-                    ("gas", "span_gas"),
-                )
-                if (span := parse_span(row.pop(column)))
-            }
-            safety = row.pop("safety") == "yes"
-            points[row["key"]] = ReadingDefinition(spans=spans, safety=safety, **row)
+    lines = files("logbook.plant").joinpath("catalogue.csv").read_text(encoding="utf-8").splitlines()
+    for row in csv.DictReader(lines):
+        spans = {
+            kind: span
+            for kind, column in (
+                ("two-stroke", "span_two_stroke"),
+                ("four-stroke", "span_four_stroke"),
+                ("gas", "span_gas"),
+            )
+            if (span := parse_span(row.pop(column)))
+        }
+        safety = row.pop("safety") == "yes"
+        points[row["key"]] = ReadingDefinition(spans=spans, safety=safety, **row)
     return points
