@@ -325,3 +325,16 @@ def _in_words(path: Path) -> Iterator[None]:
         raise BookUnusable(sentence) from error
     except OSError as error:
         raise BookUnusable(f"{path} could not be used: {error.strerror or error}.") from error
+
+
+def rows_of_file(path: Path) -> list[Row]:
+    """Every row of a copy made by `backup`. Raises BookUnusable."""
+    if not path.is_file():
+        raise BookUnusable(f"There is no file {path}.")
+    connection = _connect_to_read(path)
+    try:
+        with _in_words(path):
+            _check_version(connection, path)
+            return list(connection.execute(f"{_SELECT} ORDER BY number"))
+    finally:
+        connection.close()

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 from dataclasses import dataclass
+from itertools import zip_longest
 
 from logbook.book.entry import FIRST_DIGEST, Row, digest_of
 
@@ -38,3 +39,16 @@ def breaks(rows: Iterable[Row], seal: str = "") -> tuple[Break, ...]:
     if not sealed:
         found.append(Break(expected, f"no entry carries the digest {seal}: the book was altered before that seal"))
     return tuple(found)
+
+
+def differences(rows: Iterable[Row], copy: Iterable[Row]) -> list[Break]:
+    """Where the book and an earlier copy of it differ; entries written after the copy are no difference."""
+    found: list[Break] = []
+    for row, kept in zip_longest(rows, copy):
+        if kept is None:
+            break
+        if row is None:
+            found.append(Break(kept[0], f"entry {kept[0]} stands in the copy and not in the book"))
+        elif row != kept:
+            found.append(Break(row[0], f"entry {row[0]} is not what the copy has"))
+    return found
