@@ -19,7 +19,7 @@ _MOST_STEPS = 60
 
 
 def expansion(density15_kg_m3: ArrayLike) -> Any:
-    """Thermal expansion alpha at 15 degC [1/K] by zone of density [kg/m3, 653 to 1075; other scalars raise ValueError]."""
+    """Thermal expansion alpha at 15 degC [1/K] by zone of density [kg/m3, 653 to 1075, else ValueError]."""
     (rho,) = floats(density15_kg_m3)
     holds = good(
         (rho >= 653) & (rho <= 1075), "Density at 15 degC must lie between 653 and 1075 kg/m3 (0.987 kg/L is 987).", rho

@@ -56,7 +56,7 @@ def output(
     period_h: float,
     service_h: float,
 ) -> Output:
-    """Capacity, output and load factors from energies [kWh], peak and capacities [kW], hours [h]. ValueError if empty."""
+    """Capacity, output and load factors from energies [kWh], peak and capacities [kW], hours [h]."""
     if min(gross_kwh, peak_kw, gross_capacity_kw, net_capacity_kw, period_h, service_h) <= 0 or net_kwh > gross_kwh:
         raise ValueError("Energy, peak, capacity and hours must be above zero, and net not above gross.")
     mean, in_service = gross_kwh / period_h, gross_kwh / service_h

@@ -1,4 +1,4 @@
-"""Uncertainty after the GUM (JCGM 100): combination, resolution, supply less return, autocorrelation, lots, agreement."""
+"""Uncertainty after the GUM (JCGM 100): combination, resolution, autocorrelation, lots, agreement of witnesses."""
 
 from __future__ import annotations
 
