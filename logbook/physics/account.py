@@ -41,7 +41,8 @@ def factors(
     load: ArrayLike,
     instrument: ArrayLike = 1.0,
 ) -> Floats:
-    """The five factors (5, ...): `lcv_ratio` LCV_ref/LCV, `ambient` a, `load` b_ref(load)/B0, `instrument` 1 + error."""
+    """The five factors (5, ...): `lcv_ratio` LCV_ref/LCV, `ambient` a, `load` b_ref(load)/B0,
+    `instrument` 1 + error."""
     b, b0, fuel, a, share, meter = floats(consumption, reference, lcv_ratio, ambient, load, instrument)
     engine = b / (b0 * fuel * a * share * meter)
     return np.stack(np.broadcast_arrays(fuel, a, share, meter, engine))
@@ -50,7 +51,7 @@ def factors(
 def against_reference(
     consumption: ArrayLike, reference: ArrayLike, five: Floats, efficiency: ArrayLike, reference_efficiency: ArrayLike
 ) -> Account:
-    """Account of readings against the reference: sum of consumption terms = b - B0, of efficiency terms = eta - eta_0."""
+    """Account of readings against the reference: the terms add up to b - B0 and to eta - eta_0."""
     b, b0, eta, eta0 = floats(consumption, reference, efficiency, reference_efficiency)
     logs = np.log(five)
     c = log_mean(b, b0) * logs

@@ -164,6 +164,9 @@ def compressor_efficiency(
 
 
 def cooler_effectiveness(air_in_c: ArrayLike, air_out_c: ArrayLike, water_in_c: ArrayLike) -> tuple[Any, Any]:
-    """(approach [K], effectiveness 0..1) of a charge air cooler: air out - water in; (air in - out)/(air in - water in)."""
+    """(approach [K], effectiveness 0..1) of a charge air cooler.
+
+    Air out - water in; (air in - air out)/(air in - water in).
+    """
     hot, out, water = floats(air_in_c, air_out_c, water_in_c)
     return shaped(out - water), shaped((hot - out) / (hot - water))

@@ -60,7 +60,7 @@ class TheilSen:
 def theil_sen(
     values: ArrayLike, times: ArrayLike | None = None, *, n_effective: float | None = None, confidence: float = 0.95
 ) -> TheilSen:
-    """Median of all pair slopes with Sen's interval, ranks rounded outwards.
+    """Median of all pair slopes with Sen's interval.
 
     values (n,), times (n,) or 0, 1, 2 ...; pairs at the same time are left out. Needs 8 points, else ValueError.
     """
@@ -81,8 +81,8 @@ def theil_sen(
     variance = mann_kendall(y, n_effective).variance
     c = float(norm.ppf(0.5 + confidence / 2)) * np.sqrt(variance)
     count = slopes.size
-    # Ranks (N - C)/2 and (N + C)/2 + 1, counted from 1, rounded outwards; beyond the ends nothing is known.
-    lower, upper = int(np.floor((count - c) / 2)), int(np.ceil((count + c) / 2 + 1))
+    # Ranks (N - C)/2 and (N + C)/2 + 1, counted from 1, to the nearest as scipy does; beyond the ends nothing is known.
+    lower, upper = round((count - c) / 2), round((count + c) / 2 + 1)
     low = float(slopes[lower - 1]) if lower >= 1 else -np.inf
     high = float(slopes[upper - 1]) if upper <= count else np.inf
     return TheilSen(slope, low, high, float(np.median(y) - slope * np.median(x)), y.size)

@@ -66,7 +66,7 @@ def autocorrelation(values: ArrayLike) -> float:
 def effective_number(n: float, rho: float) -> float:
     """Number of independent points that n autocorrelated ones are worth: n (1 - rho)/(1 + rho), never above n."""
     rho = max(rho, 0.0)
-    return n * (1 - rho) / (1 + rho)
+    return float(n * (1 - rho) / (1 + rho))
 
 
 def repeatability(values: ArrayLike, times: ArrayLike | None = None) -> float:
