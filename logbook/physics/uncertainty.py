@@ -86,7 +86,7 @@ def repeatability(values: ArrayLike, times: ArrayLike | None = None) -> float:
     fit = theilslopes(y, x)
     residual = y - fit.slope * x
     from_trend = 1.4826 * float(np.median(np.abs(residual - np.median(residual))))
-    return max(from_differences, from_trend)
+    return float(max(from_differences, from_trend))
 
 
 def slope(times: ArrayLike, lots: ArrayLike, u_point: float, u_lot: float, n_effective: float | None = None) -> float:
