@@ -159,7 +159,7 @@ STATES = st.tuples(
 @settings(max_examples=80)
 @given(STATES, st.floats(1.0, 1.3))
 def test_what_must_hold_everywhere(state: tuple[float, ...], further: float) -> None:
-    p1, t1, r, pmax, lam, lcv = state
+    p1, t1, r, _, lam, lcv = state
     found = run(*state, expansion_ratio=r * further)
     # The bound between the hottest and the coldest gas is not reached.
     assert 0 < found.efficiency < 1 - t1 / found.t3_k
