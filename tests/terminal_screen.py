@@ -43,6 +43,8 @@ KEYS = {
     "left": "\x1b[D",
     "home": "\x1b[H",
     "end": "\x1b[F",
+    "ctrl+home": "\x1b[1;5H",
+    "ctrl+end": "\x1b[1;5F",
     "pageup": "\x1b[5~",
     "pagedown": "\x1b[6~",
     "ctrl+c": "\x03",

@@ -1,0 +1,1 @@
+"""What stands between the panes and the terminal: driver, glyphs, fitness of the terminal, settings, a dropped line."""

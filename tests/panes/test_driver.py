@@ -1,0 +1,222 @@
+"""The driver that writes only changed cells: the same picture as the stock driver, and how few bytes."""
+
+import random
+import signal
+import sys
+import time
+from collections.abc import Callable, Iterator
+from pathlib import Path
+from types import SimpleNamespace
+
+import pyte
+import pytest
+from terminal_screen import TerminalScreen
+from textual.drivers.linux_driver import LinuxDriver
+from textual.geometry import Size
+
+from logbook.panes.terminal.driver import ChangedCellsDriver
+
+APP = str(Path(__file__).with_name("small_app.py"))
+SWITCH, ASK, WIDTHS = "\x14", "\x0f", "\x18"
+SYNCHRONISED = {b"\x1b[?2026$p": b"\x1b[?2026;2$y"}
+
+
+def started(
+    driver: str, *, columns: int = 80, rows: int = 24, replies: dict[bytes, bytes] | None = None
+) -> TerminalScreen:
+    screen = TerminalScreen([sys.executable, APP, driver], columns=columns, rows=rows, replies=replies)
+    screen.wait_for("ready")
+    screen.wait_quiet()
+    return screen
+
+
+@pytest.fixture(scope="module")
+def pair() -> Iterator[tuple[TerminalScreen, TerminalScreen]]:
+    """The small app twice, on terminals that know synchronised output: under the stock driver and under ours."""
+    with started("stock", replies=SYNCHRONISED) as stock, started("changed", replies=SYNCHRONISED) as changed:
+        yield stock, changed
+
+
+def same(pair: tuple[TerminalScreen, TerminalScreen], shows: str, act: Callable[[TerminalScreen], object]) -> None:
+    """Do the same before both, wait for what it shows, and compare every character and attribute."""
+    for screen in pair:
+        act(screen)
+    for screen in pair:
+        screen.wait_for(shows)
+    for screen in pair:
+        screen.wait_quiet(0.1)
+    stock, changed = pair
+    for number, (expected, found) in enumerate(zip(stock.picture, changed.picture, strict=True)):
+        assert found == expected, f"line {number} differs: {stock.lines[number]!r}, {changed.lines[number]!r}"
+    assert changed.cursor == stock.cursor
+
+
+def typed(*keys: str) -> Callable[[TerminalScreen], None]:
+    return lambda screen: screen.send(*keys)
+
+
+def test_same_picture_through_a_session(pair: tuple[TerminalScreen, TerminalScreen]) -> None:
+    assert b"\x1b[?2026h" in pair[1].output
+    same(pair, "712,5", typed("712,5"))
+    same(pair, "rack", typed("tab"))
+    same(pair, "64", typed("64"))
+    same(pair, "moved by one", typed(WIDTHS))
+    same(pair, "value 0", typed("tab"))
+    same(pair, "value 24", typed(*["down"] * 12))
+    same(pair, "value 53", typed("ctrl+end"))
+    same(pair, "Esc: no", typed(ASK))
+    same(pair, "value 53", typed("escape"))
+    same(pair, "03 line of the", typed(SWITCH))
+    same(pair, "20 line of the", typed("pagedown"))
+    same(pair, "value 53", typed(SWITCH))
+
+
+def test_same_picture_after_the_window_changed_its_size(pair: tuple[TerminalScreen, TerminalScreen]) -> None:
+    for columns, rows in ((100, 30), (61, 20), (80, 24)):
+        same(pair, "ready", lambda screen, size=(columns, rows): screen.resize(*size))
+        same(pair, "ready", typed("up"))
+
+
+def test_all_is_drawn_again_after_ctrl_z_and_resume(pair: tuple[TerminalScreen, TerminalScreen]) -> None:
+    # The stock driver draws only part of it.
+    screen = pair[1]
+    before = screen.picture
+    screen.send("ctrl+z")
+    screen.wait_stopped()
+    assert 25 * 32 in screen.modes, "the shell must have its cursor"
+    screen.draw(b"\x1b[2J\x1b[H[1]+  Stopped    logbook\r\n$ fg\r\n")
+    screen.signal(signal.SIGCONT)
+    screen.wait_for(lambda _: screen.picture == before)
+    assert 25 * 32 not in screen.modes
+    screen.send("end", "home")
+    screen.wait_quiet()
+    assert screen.picture == before
+
+
+def test_a_size_that_changed_there_and_back_is_drawn_anew(pair: tuple[TerminalScreen, TerminalScreen]) -> None:
+    # The program finds its size as it was, and the terminal has lost the columns in between: the stock driver
+    # leaves them lost.
+    screen = pair[1]
+    screen.send("home")
+    screen.wait_quiet()
+    before = screen.picture
+    screen.resize(60, 24)
+    screen.resize(80, 24)
+    assert screen.picture != before
+    screen.send("down", "up")
+    screen.wait_for(lambda _: screen.picture == before)
+
+
+def test_the_redraw_key_takes_away_what_another_program_wrote(pair: tuple[TerminalScreen, TerminalScreen]) -> None:
+    screen = pair[1]
+    before = screen.picture
+    screen.draw(b"\x1b[?7h\x1b[12;30H\x1b[1;31mBroadcast message: \r\n\r\nthe mess closes at eight\x1b[2;3H")
+    assert "Broadcast" in screen.text
+    screen.send("ctrl+r")
+    screen.wait_for(lambda _: screen.picture == before)
+
+
+def test_bytes_on_the_wire() -> None:
+    with started("changed", replies=SYNCHRONISED) as screen:
+        assert screen.received < 5000
+        assert screen.bytes_of("7", until="7") < 120
+        assert screen.bytes_of("tab", until="rack") < 250
+        assert screen.bytes_of(SWITCH, until="sheet") < 8000
+        assert screen.bytes_of("down", until="16 line") < 4000
+        before = screen.received
+        time.sleep(1.2)
+        screen.wait_quiet(0.05)
+        assert screen.received == before, "an idle screen sends nothing"
+
+
+def test_the_terminal_is_left_clean() -> None:
+    with started("changed", replies=SYNCHRONISED) as screen:
+        assert b"\x1b[?1000h" not in screen.output, "no mouse unless asked for"
+        screen.send("ctrl+d")
+        assert screen.wait_exit() == 0
+        assert 25 * 32 in screen.modes, "the cursor shows"
+        assert 7 * 32 in screen.modes, "lines wrap"
+        for mode in (b"1049", b"2004", b"1004"):
+            assert screen.output.rindex(b"\x1b[?" + mode + b"l") > screen.output.rindex(b"\x1b[?" + mode + b"h")
+        assert screen.output.count(b"\x1b[<u") == screen.output.count(b"\x1b[>"), "the keyboard is as it was"
+        assert screen.output.count(b"\x1b[?2026h") == screen.output.count(b"\x1b[?2026l")
+
+
+@pytest.fixture
+def driver(monkeypatch: pytest.MonkeyPatch) -> tuple[ChangedCellsDriver, pyte.Screen]:
+    """The driver by itself: what it sends goes into an emulator of 24 x 6 cells."""
+    screen = pyte.Screen(24, 6)
+    stream = pyte.Stream(screen)
+    monkeypatch.setattr(LinuxDriver, "write", lambda self, data: stream.feed(data))
+    monkeypatch.setattr(LinuxDriver, "__init__", lambda self, app, **_: setattr(self, "_app", app))
+    app = SimpleNamespace(size=Size(24, 6))
+    return ChangedCellsDriver(app), screen  # type: ignore[arg-type]
+
+
+def random_frame(chance: random.Random, letters: str) -> str:
+    styles = ["", "1", "4;31", "7;33;44", "38;5;39;48;5;49", "97;100", "39;49"]
+    runs = []
+    for _ in range(chance.randrange(1, 6)):
+        text = "".join(chance.choices(letters, k=chance.randrange(1, 10)))
+        style = chance.choice(styles)
+        x, y = chance.randrange(24), chance.randrange(6)
+        runs.append(f"\x1b[{y + 1};{x + 1}H" + (f"\x1b[{style}m{text}\x1b[0m" if style else text))
+    return "".join(runs)
+
+
+@pytest.mark.parametrize("seed", range(5))
+def test_random_frames_end_in_the_same_picture(driver: tuple[ChangedCellsDriver, pyte.Screen], seed: int) -> None:
+    ours, found = driver
+    expected = pyte.Screen(24, 6)
+    stream = pyte.Stream(expected)
+    expected.reset_mode(7, private=True)
+    chance = random.Random(seed)
+    for _ in range(60):
+        frame = random_frame(chance, "abc ± ─")
+        stream.feed(frame)
+        ours.write(frame)
+        # A terminal that does not wrap writes on in its last column; the driver cuts at the edge.
+        for y in range(6):
+            for x in range(23):
+                assert found.buffer[y][x] == expected.buffer[y][x]
+
+
+@pytest.mark.parametrize("seed", range(5))
+def test_the_terminal_shows_the_wanted_cells_with_wide_characters(
+    driver: tuple[ChangedCellsDriver, pyte.Screen], seed: int
+) -> None:
+    ours, found = driver
+    chance = random.Random(seed)
+    for number in range(80):
+        if number % 20 == 19:
+            found.reset()
+            ours.forget()
+        ours.write(random_frame(chance, "ab寬字é"))
+        assert [[found.buffer[y][x].data for x in range(24)] for y in range(6)] == [
+            [characters for characters, _ in row] for row in ours._wanted
+        ]
+
+
+def test_an_unchanged_frame_sends_nothing(driver: tuple[ChangedCellsDriver, pyte.Screen]) -> None:
+    ours, _ = driver
+    sent: list[str] = []
+    ours.write("\x1b[2;3H\x1b[1mload\x1b[0m")
+    with pytest.MonkeyPatch.context() as patch:
+        patch.setattr(LinuxDriver, "write", lambda self, data: sent.append(data))
+        ours.write("\x1b[2;3H\x1b[1mload\x1b[0m")
+        assert sent == []
+        ours.write("\x1b[2;3H\x1b[1mlead\x1b[0m")
+    assert sent == ["\x1b[2;4H\x1b[1me\x1b[m\x1b[2;7H"]
+
+
+def test_what_is_no_drawing_is_passed_on(driver: tuple[ChangedCellsDriver, pyte.Screen]) -> None:
+    ours, _ = driver
+    ours.write("\x1b[1;1Ha")
+    sent: list[str] = []
+    with pytest.MonkeyPatch.context() as patch:
+        patch.setattr(LinuxDriver, "write", lambda self, data: sent.append(data))
+        ours.write("\x07")
+        ours.write("\x1b]52;c;YQ==\x07")
+        ours.write("\x1b[?2004l")
+        ours.write("\x1b[1;1H\x1b]8;id=1;https://example.org\x1b\\a\x1b]8;;\x1b\\")
+    assert sent == ["\x07", "\x1b]52;c;YQ==\x07", "\x1b[?2004l"]
