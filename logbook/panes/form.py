@@ -19,9 +19,9 @@ from textual.strip import Strip
 from logbook.reading.entering import Field, Round
 from logbook.reading.text import printable
 
-LABEL_WIDTH = 25
-UNIT_WIDTH = 6
-FIELD_WIDTH = 27
+LABEL_WIDTH = 30
+UNIT_WIDTH = 5
+FIELD_WIDTH = 25
 MARK_WIDTH = 2
 
 # One key in an empty field of a single point; in a row the letters keep a place instead.
@@ -215,6 +215,12 @@ class RoundForm(ScrollView, can_focus=True):
         self._refresh_line(after)
         self._show(after)
         self.post_message(self.Typed())
+
+    def show_position(self) -> None:
+        """The round moved to another field by itself: draw it, cursor at the end of its text."""
+        self.cursor = len(self.entering.text)
+        self._show(self._line_of(self.entering.position))
+        self.refresh()
 
     def _show(self, line: int) -> None:
         height = max(self.size.height, 1)

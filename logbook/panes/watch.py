@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import replace
-from datetime import timedelta
+from datetime import datetime, timedelta
 from typing import TYPE_CHECKING, ClassVar
 
 from textual import on, work
@@ -17,8 +17,10 @@ from logbook.book.drafts import Draft, DraftUnusable, Typed
 from logbook.book.entry import NewEntry, reading_body
 from logbook.panes.form import RoundForm
 from logbook.panes.pane import Pane
-from logbook.reading.round import Habits, RoundPlan, begin, fields_of, plans_of
+from logbook.reading.entering import Round, Target
+from logbook.reading.round import PLANT, RoundPlan, begin, fields_of, plans_of, understanding
 from logbook.reading.text import printable
+from logbook.reading.value import Value
 
 if TYPE_CHECKING:
     from logbook.panes.app import LogbookApp, Session
@@ -42,6 +44,8 @@ class WatchPane(Pane):
         self.form: RoundForm | None = None
         self._choices: list[Draft | RoundPlan] = []
         self._signing = False
+        self._editing = False
+        """the keys go to the fields, not to the pane"""
         self._unkept = ""
         """why the last field could not be kept in the draft; empty when it was"""
 
@@ -54,10 +58,18 @@ class WatchPane(Pane):
 
     def shown(self) -> None:
         if self.form is not None:
-            self.form.focus()
+            self._edit()
         else:
             self.focus()
             self._offer()
+
+    def _edit(self) -> None:
+        """The keys go to the fields."""
+        assert self.form is not None
+        self._editing, self._signing = True, False
+        self.form.focus()
+        self._app.show_keys(self)
+        self._tell()
 
     # Choosing a round
 
@@ -126,20 +138,19 @@ class WatchPane(Pane):
 
     async def _open(self, draft: Draft) -> None:
         session = self.session
-        last = {
-            (subject, key): value
-            for subject in dict.fromkeys(["plant", *draft.subjects])
-            if (entry := session.book.last_reading_before(subject, draft.taken_utc)) is not None
-            for key, value in entry.values().items()
-        }
-        fields, understand = fields_of(session.plant, draft.subjects, draft.occasion, last, Habits.of(session.plant))
-        from logbook.reading.entering import Round
-
+        last: dict[Target, Value] = {}
+        last_at: dict[str, datetime] = {}
+        for subject in (PLANT, *draft.subjects):
+            entry = session.book.last_reading_before(subject, draft.taken_utc)
+            if entry is not None:
+                last_at[subject] = entry.taken_utc
+                last |= {(subject, key): value for key, value in entry.values().items()}
+        fields = fields_of(session.plant, draft.subjects, draft.occasion)
         names = [item.name for item in fields]
         lost = [name for name in draft.fields if name not in names]
         entering = Round(
             fields=fields,
-            understand=understand,
+            understand=understanding(session.plant, last, last_at, draft.taken_utc),
             last=last,
             texts={name: typed.text for name, typed in draft.fields.items() if name in names},
             accepted={name: typed.accepted for name, typed in draft.fields.items() if name in names},
@@ -149,12 +160,9 @@ class WatchPane(Pane):
         self.form = RoundForm(entering)
         self.query_one("#watch-list", Static).display = False
         await self.mount(self.form)
-        self.form.focus()
-        self._app.show_keys(self)
+        self._edit()
         if lost:
             self._app.say(f"plant.toml no longer has {', '.join(lost)}: what was typed there stays in the draft.")
-        else:
-            self._tell()
 
     # Entering
 
@@ -198,15 +206,19 @@ class WatchPane(Pane):
 
     @on(RoundForm.LeaveRequested)
     def _to_keys(self) -> None:
-        self.focus()
-        self._signing = False
-        self._app.show_keys(self)
+        self._to_pane()
         self._app.say("The round is kept. Enter: on with it; o: sign off; or another pane.")
 
     @on(RoundForm.Finished)
     def _finished(self) -> None:
-        self.focus()
+        self._to_pane()
         self.action_sign_off()
+
+    def _to_pane(self) -> None:
+        """The keys go to the pane."""
+        self._editing, self._signing = False, False
+        self.focus()
+        self._app.show_keys(self)
 
     def action_resume(self) -> None:
         if self.form is None:
@@ -214,9 +226,7 @@ class WatchPane(Pane):
         if self._signing:
             self._sign()
             return
-        self.form.focus()
-        self._app.show_keys(self)
-        self._tell()
+        self._edit()
 
     async def action_put_away(self) -> None:
         """Back to the choice of rounds; the draft stays."""
@@ -228,7 +238,7 @@ class WatchPane(Pane):
     async def _close_form(self) -> None:
         if self.form is not None:
             await self.form.remove()
-        self.form, self.draft, self._signing = None, None, False
+        self.form, self.draft, self._signing, self._editing = None, None, False, False
         self.query_one("#watch-list", Static).display = True
         self.focus()
 
@@ -244,10 +254,8 @@ class WatchPane(Pane):
         waiting = entering.open_fields()
         if waiting:
             entering.go(entering.fields.index(waiting[0]))
-            self.form.cursor = len(entering.text)
-            self.form.refresh()
-            self.form.focus()
-            self._tell()
+            self.form.show_position()
+            self._edit()
             return
         empty = entering.empty_fields()
         self._signing = True
@@ -262,7 +270,7 @@ class WatchPane(Pane):
         assert self.form is not None
         assert self.draft is not None
         session, draft = self.session, self.draft
-        by_subject: dict[str, dict[str, object]] = {}
+        by_subject: dict[str, dict[str, Value]] = {}
         for (subject, key), value in self.form.entering.values().items():
             by_subject.setdefault(subject, {})[key] = value
         entries = [
@@ -274,7 +282,7 @@ class WatchPane(Pane):
                 person=session.person,
                 identity_by=session.identity_by,
                 round=draft.round,
-                body=reading_body(draft.occasion, values),  # type: ignore[arg-type]
+                body=reading_body(draft.occasion, values),
             )
             for subject, values in by_subject.items()
         ]
@@ -289,16 +297,10 @@ class WatchPane(Pane):
     @work(exclusive=True)
     async def _after(self, draft: Draft, subjects: list[str]) -> None:
         await self._close_form()
-        count = len(subjects)
-        head = session_head = self.session.book.head()
-        self._offer(
-            before=[
-                f"In the book: {printable(draft.round)}, {count} entries, the last is {session_head[0]}.",
-                "Working out the figures ...",
-            ]
-        )
+        number, _ = self.session.book.head()
+        written = f"In the book: {printable(draft.round)}, entries up to {number}."
+        self._offer(before=[written, "Working out the figures ..."])
         self._app.say("")
-        del head
         self._answer(draft, subjects)
 
     @work(thread=True, exclusive=True, exit_on_error=False, group="answer")
@@ -323,7 +325,7 @@ class WatchPane(Pane):
             return "l Ladder  t Trend  b Book  ? keys and cautions  q leave"
         if self.form is None:
             return "1-9 choose  l Ladder  t Trend  b Book  ? keys and cautions  q leave"
-        if self.form.has_focus:
+        if self._editing:
             return "Enter next  Up back  n N/R  s stopped  - not fitted  Esc other keys"
         return "Enter on with the round  o sign off  x another round  ? keys and cautions  q leave"
 

@@ -20,7 +20,7 @@ PLANT = "plant"
 WATCH_HOURS = 4
 SHIP_AT_NOON = ("distance_observed", "distance_log", "draught_forward", "draught_aft", "wind_force")
 
-_WIDTH_OF_ABBREVIATION = 11
+_WIDTH_OF_ABBREVIATION = 10
 
 
 @dataclass(frozen=True, slots=True)
