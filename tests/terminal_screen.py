@@ -159,7 +159,10 @@ class TerminalScreen:
 
     def send(self, *keys: str) -> None:
         """Type: names of `KEYS`, or text as it stands."""
-        os.write(self._file, "".join(KEYS.get(key, key) for key in keys).encode())
+        self.send_bytes("".join(KEYS.get(key, key) for key in keys).encode())
+
+    def send_bytes(self, data: bytes) -> None:
+        os.write(self._file, data)
 
     def draw(self, data: bytes) -> None:
         """What another program, or a disturbed line, puts on the screen."""

@@ -1,6 +1,7 @@
-"""A small app for the tests of the driver: python small_app.py stock|changed"""
+"""A small app for the tests of the driver: python small_app.py stock|changed [file for what is kept]"""
 
 import sys
+from pathlib import Path
 from typing import ClassVar
 
 from textual.app import App, ComposeResult
@@ -10,6 +11,7 @@ from textual.screen import ModalScreen
 from textual.widgets import ContentSwitcher, DataTable, Input, Label, Static
 
 from logbook.panes.terminal.driver import ChangedCellsDriver
+from logbook.panes.terminal.dropped_line import when_dropped
 from logbook.panes.terminal.settings import run
 
 
@@ -62,6 +64,12 @@ class SmallApp(App[None]):
         for number in range(60):
             table.add_row(str(number), f"value {number * 7 % 60}")
         self.query_one("#speed").focus()
+        when_dropped(self.keep_and_leave)
+
+    def keep_and_leave(self) -> None:
+        if len(sys.argv) > 2:
+            Path(sys.argv[2]).write_text(self.query_one("#speed", Input).value)
+        self.exit()
 
     def action_switch(self) -> None:
         switcher = self.query_one(ContentSwitcher)

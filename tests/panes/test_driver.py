@@ -142,6 +142,15 @@ def test_the_terminal_is_left_clean() -> None:
         assert screen.output.count(b"\x1b[?2026h") == screen.output.count(b"\x1b[?2026l")
 
 
+def test_a_byte_that_is_no_utf8_does_not_end_the_app(pair: tuple[TerminalScreen, TerminalScreen]) -> None:
+    # As a terminal set to Latin-1 sends a letter with an accent.
+    for screen in pair:
+        screen.send("shift+tab", "ctrl+u")
+        screen.wait_quiet(0.1)
+        screen.send_bytes(b"1\xe92")
+        screen.wait_for("1\ufffd2")
+
+
 @pytest.fixture
 def driver(monkeypatch: pytest.MonkeyPatch) -> tuple[ChangedCellsDriver, pyte.Screen]:
     """The driver by itself: what it sends goes into an emulator of 24 x 6 cells."""
@@ -195,6 +204,17 @@ def test_the_terminal_shows_the_wanted_cells_with_wide_characters(
         assert [[found.buffer[y][x].data for x in range(24)] for y in range(6)] == [
             [characters for characters, _ in row] for row in ours._wanted
         ]
+
+
+def test_all_is_sent_on_resume_even_if_the_app_draws_nothing(
+    driver: tuple[ChangedCellsDriver, pyte.Screen], monkeypatch: pytest.MonkeyPatch
+) -> None:
+    ours, found = driver
+    ours.write("\x1b[2;3Hload")
+    found.reset()
+    monkeypatch.setattr(LinuxDriver, "resume_application_mode", lambda self: self.write("\x1b[?1049h"))
+    ours.resume_application_mode()
+    assert found.display[1].strip() == "load"
 
 
 def test_an_unchanged_frame_sends_nothing(driver: tuple[ChangedCellsDriver, pyte.Screen]) -> None:

@@ -1,29 +1,52 @@
-"""Settings of Textual for a slow line: nothing moves or ticks, few colours, only what changed is sent."""
+"""Settings of Textual for a slow line and for terminals that are nothing special."""
 
 from __future__ import annotations
 
+import codecs
+import functools
 import sys
 from typing import TypeVar
 
-from rich.console import ColorSystem
+from rich.color import ColorSystem
 from textual.app import App
+from textual.scrollbar import ScrollBar, ScrollBarRender
 
 Result = TypeVar("Result")
+
+
+class PlainScrollBar(ScrollBarRender):
+    """A scroll bar of whole cells: its half cells are blocks that few fonts hold, sent again at each step."""
+
+    VERTICAL_BARS = [" "] * 8
+    HORIZONTAL_BARS = [" "] * 8
 
 
 def run(app: App[Result], *, plain_driver: bool = False) -> Result | None:
     """Run the app on the terminal of this process, without mouse; returns what the app returns.
 
+    Nothing moves: no animation, no command palette. A pane that holds Inputs gives them `cursor_blink=False`.
+
     Arguments: plain_driver: Textual's own driver instead of the one that writes only changed cells.
     """
     app.animation_level = "none"
     app.use_command_palette = False
-    # Rich offers no way to set it later, and Textual makes the console. A colour of the sixteen costs 2 bytes, one of
-    # sixteen million up to 16, and every terminal has the sixteen, with the person's own choice for glare or dark.
+    # Textual makes the console and Rich has no way to set this later. A colour of the sixteen costs two or three
+    # bytes, one of sixteen million up to sixteen; and the sixteen are the person's own, for glare or for the dark.
     app.console._color_system = ColorSystem.STANDARD
+    ScrollBar.renderer = PlainScrollBar
     # Textual has no other driver where there are no Unix terminals.
-    if not plain_driver and sys.platform != "win32":
+    if sys.platform != "win32":
+        from textual.drivers import linux_driver
+
         from logbook.panes.terminal.driver import ChangedCellsDriver
 
-        app.driver_class = ChangedCellsDriver
+        # Noise on the line, or a terminal set to Latin-1, sends bytes that are no UTF-8: they are to be shown as
+        # unreadable, and not to end the program.
+        linux_driver.getincrementaldecoder = _forgiving_decoder  # type: ignore[attr-defined,assignment]
+        if not plain_driver:
+            app.driver_class = ChangedCellsDriver
     return app.run(mouse=False)
+
+
+def _forgiving_decoder(encoding: str) -> functools.partial[codecs.IncrementalDecoder]:
+    return functools.partial(codecs.getincrementaldecoder(encoding), errors="replace")
