@@ -1,6 +1,7 @@
 """The driver that writes only changed cells: the same picture as the stock driver, and how few bytes."""
 
 import random
+import shutil
 import signal
 import sys
 import time
@@ -57,6 +58,7 @@ def typed(*keys: str) -> Callable[[TerminalScreen], None]:
 
 def test_same_picture_through_a_session(pair: tuple[TerminalScreen, TerminalScreen]) -> None:
     assert b"\x1b[?2026h" in pair[1].output
+    assert pair[1].received < 5000
     same(pair, "712,5", typed("712,5"))
     same(pair, "rack", typed("tab"))
     same(pair, "64", typed("64"))
@@ -116,17 +118,46 @@ def test_the_redraw_key_takes_away_what_another_program_wrote(pair: tuple[Termin
     screen.wait_for(lambda _: screen.picture == before)
 
 
-def test_bytes_on_the_wire() -> None:
-    with started("changed", replies=SYNCHRONISED) as screen:
-        assert screen.received < 5000
-        assert screen.bytes_of("7", until="7") < 120
-        assert screen.bytes_of("tab", until="rack") < 250
-        assert screen.bytes_of(SWITCH, until="sheet") < 8000
-        assert screen.bytes_of("down", until="16 line") < 4000
-        before = screen.received
-        time.sleep(1.2)
-        screen.wait_quiet(0.05)
-        assert screen.received == before, "an idle screen sends nothing"
+def test_bytes_on_the_wire(pair: tuple[TerminalScreen, TerminalScreen]) -> None:
+    # With the sixteen bytes of the marks of synchronised output around each.
+    screen = pair[1]
+    screen.send("ctrl+r", "shift+tab", "ctrl+u")
+    screen.wait_quiet()
+    assert screen.bytes_of("7", until="7") < 120
+    assert screen.bytes_of("tab", until="value") < 250
+    assert screen.bytes_of(SWITCH, until="sheet") < 8000
+    assert screen.bytes_of("ctrl+r", until="sheet") < 8000
+    assert screen.bytes_of(SWITCH, until="value") < 8000
+
+
+def test_an_idle_screen_sends_nothing(pair: tuple[TerminalScreen, TerminalScreen]) -> None:
+    screen = pair[1]
+    screen.wait_quiet()
+    before = screen.received
+    time.sleep(1.2)
+    screen.wait_quiet(0.05)
+    assert screen.received == before
+
+
+@pytest.mark.skipif(shutil.which("tmux") is None, reason="needs tmux")
+def test_a_session_is_taken_over_by_another_terminal(tmp_path: Path) -> None:
+    tmux = ["tmux", "-S", str(tmp_path / "socket"), "-f", "/dev/null"]
+    with TerminalScreen([*tmux, "new-session", f"{sys.executable} {APP} changed"]) as first:
+        first.wait_for("ready")
+        first.send("71")
+        first.wait_for("71")
+        first.wait_quiet()
+        expected = first.picture[:23]
+        first.send("\x02", "d")
+        first.wait_exit()
+    with TerminalScreen([*tmux, "attach"], columns=70, rows=20) as narrow:
+        narrow.wait_for("71")
+        narrow.send("\x02", "d")
+        narrow.wait_exit()
+    with TerminalScreen([*tmux, "attach"]) as second:
+        second.wait_for(lambda _: second.picture[:23] == expected)
+        second.send("ctrl+d")
+        assert second.wait_exit() == 0
 
 
 def test_the_terminal_is_left_clean() -> None:
