@@ -1,258 +1,373 @@
-"""Units as people type them: a closed list of spellings for each quantity, never a library's open vocabulary.
+"""Units as people type them: closed lists of spellings, one for each family of quantities (units.csv).
 
-A general unit library reads trade shorthand as something else without a word (`PS` petasiemens, `MT` megatesla, `ton`
-907 kg, `mt` a thousandth of a tonne). Factors here are plain floats; a test proves each of them against pint.
+No open vocabulary is asked, because a general unit library reads trade shorthand as something else (PS as petasiemens).
+Factors are plain floats; the tests prove every one of them against pint.
 """
 
 from __future__ import annotations
 
-import re
+import csv
+import math
 from collections.abc import Mapping
 from dataclasses import dataclass
+from functools import cache, partial
+from importlib.resources import files
+from types import MappingProxyType
 
-_DROPPED = str.maketrans("", "", " \t^.°º*")
-_QUANTITY = re.compile(r"\s*([+-]?(?:\d+(?:[.,]\d*)?|[.,]\d+)(?:[eE][+-]?\d+)?)\s*(.*?)\s*")
+from logbook.plant.numbers import split_number
 
+NO_ANSWERS: Mapping[str, str] = MappingProxyType({})
+BARE = "bare number"
+"""Key of the answer that says in which unit numbers without a unit are typed at a point."""
 
-class UnitRefused(Exception):
-    """The unit is not understood, or would have to be guessed: a sentence that says what to type."""
+_SUPERSCRIPTS = "\u00b2\u00b3\u00b9\u207b"
+# Blanks, ^, points, degree signs, multiplication dots and brackets say nothing.
+_DROPPED = " \t\u00a0\u2009\u202f^.\u00b0\u00ba\u02da\u00b7\u22c5()[]"
+_FOLDED = str.maketrans(
+    dict.fromkeys(_DROPPED)
+    | dict(zip(_SUPERSCRIPTS, "231-", strict=True))
+    | {"\u2103": "C", "\u2109": "F", "\u2212": "-", "_": None}
+)
+_METERED = ("volume", "gas volume", "mass", "energy")
+_ABSOLUTE_FAMILIES = {"pressure": 1.0, "small pressure": 1000.0, "barometer": 1000.0}
+"""base units in one bar"""
+_REFUSALS = {
+    "higher": "A higher calorific value is never mixed with lower ones: enter the lower (net) value.",
+    "seconds": "Seconds (Redwood, Saybolt) need a table that is not kept here: enter cSt from the analysis.",
+}
+_OTHER_BASIS = {
+    "gas volume": "Gas at the meter's own condition needs the meter's pressure and temperature to become Nm3 or Sm3",
+    "flow": "Mass needs the density to become volume, and volume to become mass",
+    "specific use": "This needs density and calorific value to become g/kWh",
+    "content": "By mass and by volume are not the same",
+}
+_WATER_60F_KG_M3 = 999.016
 
 
 @dataclass(frozen=True, slots=True)
-class Unit:
-    """number x factor + offset, in the family's own base unit."""
+class Choice:
+    """One answer to a question about a unit."""
 
-    factor: float
-    offset: float = 0.0
+    answer: str
+    spelling: str
+    """a spelling that leaves no question open"""
+    number: float | None
+    """what was typed, so understood [canonical unit]; None: another question, or a refusal, follows"""
+
+
+@dataclass(frozen=True, slots=True)
+class Ask:
+    """What a person has to say once for a point; the answer is kept with the point under `key`."""
+
+    key: str
+    finding: str
+    """key of the finding this makes, e.g. `looks_like_fahrenheit`"""
+    sentence: str
+    choices: tuple[Choice, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Conversion:
+    """What a number with its unit means. `number` is None where it has no meaning yet."""
+
+    number: float | None
+    """[canonical unit of the point]"""
+    unit: str = ""
+    """the unit understood"""
     reference: str = ""
-    """pressures: `gauge` or `absolute`; empty: whatever the point is"""
-    ask: str = ""
-    """not one thing: what to type instead"""
+    """gauge, absolute or differential: what the number is now; empty: not a pressure"""
+    remark: str = ""
+    """what has to be said about it, for brackets behind the number"""
+    ask: Ask | None = None
+    refusal: str = ""
+    """a sentence that says what would be understood"""
 
 
-def _same(unit: Unit, *spellings: str) -> dict[str, Unit]:
-    return dict.fromkeys(spellings, unit)
+@dataclass(frozen=True, slots=True)
+class _Unit:
+    """A row of the list: a unit, a question or a refusal."""
+
+    name: str
+    factor: float
+    zero: float
+    reference: str
+    basis: str
+    remark: str
+    ask: str
+    choices: tuple[tuple[str, str], ...]
+    refusal: str
+
+    def to_base(self, number: float) -> float:
+        if self.name == "API":
+            # Specific gravity 60/60 degF from degrees API, by their definition.
+            return math.inf if number <= -131.5 else 141.5 / (number + 131.5) * _WATER_60F_KG_M3
+        return (number - self.zero) * self.factor
+
+    def from_base(self, number: float) -> float:
+        if self.name == "API":
+            return 141.5 * _WATER_60F_KG_M3 / number - 131.5
+        return number / self.factor + self.zero
 
 
-_METRIC_HP, _MECHANICAL_HP = 0.73549875, 0.745699872
-_KG_CM2, _PSI, _MMWC = 0.980665, 0.06894757293168361, 0.0980665
-_BTU_KJ, _KCAL_KJ, _LB = 1.05505585262, 4.1868, 0.45359237
-_GAUGE, _ABSOLUTE = "gauge", "absolute"
-
-_WHICH_HP = "horsepower is metric (PS) or mechanical, 1.4 % apart: set horsepower in plant.toml, or type PS or kW"
-_WHICH_TON = "ton is a tonne (t), a long ton (1016.05 kg) or a short ton (907.185 kg): type t or kg"
-
-_TEMPERATURE = {
-    **_same(Unit(1.0), "c", "degc", "deg", "celsius"),
-    **_same(Unit(1 / 1.8, -32 / 1.8), "f", "degf"),
-    **_same(Unit(1.0, -273.15), "k", "kelvin"),
-}
-_DIFFERENCE = {**_same(Unit(1.0), "k", "c", "degc", "deg"), **_same(Unit(1 / 1.8), "f", "degf")}
-_PRESSURE = {
-    **_same(Unit(1.0), "bar", "b"),
-    **_same(Unit(1.0, reference=_GAUGE), "barg", "bar(g)"),
-    **_same(Unit(1.0, reference=_ABSOLUTE), "bara", "bar(a)"),
-    **_same(Unit(_KG_CM2, reference=_GAUGE), "kg/cm2", "kgf/cm2", "kp/cm2", "ksc", "kg", "atue"),
-    **_same(Unit(_KG_CM2, reference=_ABSOLUTE), "ata"),
-    **_same(Unit(10.0), "mpa"),
-    **_same(Unit(0.01), "kpa"),
-    **_same(Unit(0.001), "mbar", "hpa"),
-    **_same(Unit(_PSI, reference=_GAUGE), "psi", "psig", "lb", "#"),
-    **_same(Unit(_PSI, reference=_ABSOLUTE), "psia"),
-    **_same(Unit(1.0, ask="at is 0.980665 bar and atm 1.01325 bar: type it in bar"), "at", "atm"),
-}
-_SMALL = {
-    **_same(Unit(1.0), "mbar", "mb", "hpa"),
-    **_same(Unit(_MMWC), "mmwc", "mmwg", "mmaq", "mmh2o", "mmws", "mm"),
-    **_same(Unit(2.4908891), "inwc", "inh2o"),
-    **_same(Unit(0.01), "pa"),
-    **_same(Unit(10.0), "kpa"),
-    **_same(Unit(1000.0), "bar"),
-}
-_BAROMETER = {
-    **_same(Unit(1.0), "mbar", "mb", "hpa"),
-    **_same(Unit(10.0), "kpa"),
-    **_same(Unit(1000.0), "bar"),
-    **_same(Unit(1.33322387415), "mmhg", "torr"),
-    **_same(Unit(33.86388640341), "inhg"),
-}
-_POWER = {
-    **_same(Unit(1.0), "kw", "kwe"),
-    **_same(Unit(1000.0), "mw"),
-    **_same(Unit(0.001), "w"),
-    **_same(Unit(_METRIC_HP), "ps", "cv", "ch", "pk"),
-    **_same(Unit(1.0, ask=_WHICH_HP), "hp", "bhp", "shp"),
-}  # fmt: skip
-_ENERGY = {
-    **_same(Unit(1.0), "kwh", "units"),
-    **_same(Unit(1000.0), "mwh"),
-    **_same(Unit(1 / 3.6), "mj"),
-    **_same(Unit(1000 / 3.6), "gj"),
-}
-_MASS = {
-    **_same(Unit(1.0), "kg", "kgs"),
-    **_same(Unit(1000.0), "t", "te", "mt", "tonne", "tonnes"),
-    **_same(Unit(_LB), "lb", "lbs"),
-    **_same(Unit(1.0, ask=_WHICH_TON), "ton", "lt", "st"),
-}  # fmt: skip
-_VOLUME = {
-    **_same(Unit(1.0), "l", "ltr", "lit", "litre", "litres"),
-    **_same(Unit(1000.0), "m3", "cbm", "kl"),
-    **_same(Unit(3.785411784), "usg"),
-    **_same(Unit(4.54609), "ig"),
-    **_same(Unit(158.987294928), "bbl"),
-    **_same(Unit(1.0, ask="gal is a US gallon (usg) or an imperial one (ig): type which, or L"), "gal"),
-}
-_GAS_VOLUME = {
-    **_same(Unit(1.0), "nm3", "mn3"),
-    **_same(Unit(273.15 / 288.15), "sm3", "scm"),
-    **_same(
-        Unit(1.0, ask="m3 of gas needs its condition: Nm3 (0 degC) or Sm3 (15 degC), or a meter of actual m3"), "m3"
-    ),
-    **_same(Unit(1.0, ask="cubic feet of gas need their base pressure: type Nm3 or Sm3"), "scf", "mscf", "mmscf"),
-}
-_LENGTH = {
-    **_same(Unit(1.0), "m", "mtr"),
-    **_same(Unit(0.01), "cm"),
-    **_same(Unit(0.001), "mm"),
-    **_same(Unit(0.3048), "ft"),
-}
-_CALORIFIC = {
-    **_same(Unit(1.0), "mj/kg"),
-    **_same(Unit(0.001), "kj/kg"),
-    **_same(Unit(_KCAL_KJ / 1000), "kcal/kg"),
-    **_same(Unit(_BTU_KJ / _LB / 1000), "btu/lb"),
-}
-_CONTENT = {**_same(Unit(1.0), "%", "%m/m", "%v/v", "pct"), **_same(Unit(1e-4), "ppm")}
-
-FAMILIES: Mapping[str, Mapping[str, Unit]] = {
-    "power": _POWER,
-    "energy": _ENERGY,
-    "pressure": _PRESSURE,
-    "small pressure": _SMALL,
-    "barometer": _BAROMETER,
-    "temperature": _TEMPERATURE,
-    "difference": _DIFFERENCE,
-    "mass": _MASS,
-    "volume": _VOLUME,
-    "gas volume": _GAS_VOLUME,
-    "length": _LENGTH,
-    "calorific value": _CALORIFIC,
-    "content": _CONTENT,
-    "gas calorific value": {
-        **_same(Unit(1.0), "mj/nm3"),
-        **_same(Unit(288.15 / 273.15), "mj/sm3"),
-        **_same(Unit(3.6), "kwh/nm3"),
-        **_same(Unit(1.0, ask="Btu/scf needs its base pressure: type MJ/Nm3 or MJ/Sm3"), "btu/scf"),
-    },
-    "density": {
-        **_same(Unit(1.0), "kg/m3"),
-        **_same(Unit(1000.0), "kg/l", "g/cm3", "t/m3"),
-        **_same(Unit(1.0, ask="sg is at 60/60 degF and API a scale of its own: type kg/m3 at 15 degC"), "sg", "api"),
-    },
-    "viscosity": {
-        **_same(Unit(1.0), "cst", "mm2/s"),
-        **_same(Unit(1.0, ask="seconds need their table: type mm2/s (cSt)"), "sec", "rw1", "ssu"),
-    },
-    "rotation": {**_same(Unit(1.0), "rpm", "r/min", "1/min", "min-1", "u/min"), **_same(Unit(60.0), "rps", "1/s")},
-    "distance": {
-        **_same(Unit(1.0), "nm", "nmi", "m", "miles"),
-        **_same(Unit(1 / 1.852), "km"),
-    },
-    "ship speed": {
-        **_same(Unit(1.0), "kn", "kt", "kts"),
-        **_same(Unit(3600 / 1852), "m/s"),
-        **_same(Unit(1 / 1.852), "km/h"),
-    },
-    "torque": {**_same(Unit(1.0), "knm"), **_same(Unit(0.001), "nm")},
-    "hours": {**_same(Unit(1.0), "h", "hr", "hrs", "hours"), **_same(Unit(1 / 60), "min")},
-    "angle": _same(Unit(1.0), "deg", "cad", "dbtdc", "degbtdc"),
-    "frequency": _same(Unit(1.0), "hz"),
-    "share": _same(Unit(1.0), "%", "pct"),
-    "index": _same(Unit(1.0), "%", "mm", "index"),
-    "specific use": {
-        **_same(Unit(1.0), "g/kwh", "gr/kwh"),
-        **_same(Unit(1 / _METRIC_HP), "g/psh"),
-        **_same(
-            Unit(1.0, ask="horsepower hours are metric (g/PSh) or mechanical: type g/kWh or g/PSh"), "g/bhph", "lb/hph"
-        ),
-    },
-    "heat rate": {
-        **_same(Unit(1.0), "kj/kwh", "mj/mwh"),
-        **_same(Unit(_KCAL_KJ), "kcal/kwh"),
-        **_same(Unit(_BTU_KJ), "btu/kwh"),
-    },
-    "duration": {**_same(Unit(1.0), "ms"), **_same(Unit(1000.0), "s")},
-    "nox": _same(Unit(1.0), "mg/nm3"),
-    "wind force": _same(Unit(1.0), "bft", "bf"),
-    "count": _same(Unit(1.0), "count", "rev", "revs"),
-    "number": _same(Unit(1.0), "-"),
-    "state": {},
-}
+@dataclass(frozen=True, slots=True)
+class _Family:
+    base: str
+    """the unit in which the factors are given"""
+    units: Mapping[str, _Unit]
+    """by normalised spelling"""
+    shown: tuple[str, ...]
+    """spellings as people write them, for sentences"""
 
 
-def normal(spelling: str) -> str:
-    """A spelling without blanks, dots, degree signs and case: `bar (g)` and `BAR(G)` are one."""
-    return spelling.translate(_DROPPED).lower().replace("³", "3").replace("²", "2")
+def normalised(spelling: str) -> str:
+    """A spelling without what does not matter: blanks, ^, points, degree signs, brackets and case."""
+    return spelling.translate(_FOLDED).lower()
 
 
-def spellings(family: str) -> str:
-    """The spellings of a family, for a sentence."""
-    return ", ".join(FAMILIES.get(family, {})) or "no unit"
+def _product(text: str) -> float:
+    """`0.45359237*9.80665/1000` as a number: the factors of the file stand there as they are defined."""
+    value = 1.0
+    for term in text.split("*"):
+        first, *divisors = (float(number) for number in term.split("/"))
+        value *= first
+        for divisor in divisors:
+            value /= divisor
+    return value
 
 
-def unit_of(spelling: str, family: str, *, horsepower: str = "") -> Unit:
-    """The unit behind a spelling. Raises UnitRefused with the list, or with what has to be said instead."""
-    word = normal(spelling)
-    unit = FAMILIES.get(family, {}).get(word)
-    if unit is None:
-        raise UnitRefused(f"'{spelling.strip()}' is not understood here; understood are: {spellings(family)}.")
-    if unit.ask:
-        if word in ("hp", "bhp", "shp") and horsepower:
-            return Unit(_METRIC_HP if horsepower == "metric" else _MECHANICAL_HP)
-        raise UnitRefused(f"{unit.ask}.")
-    return unit
+@cache
+def _families() -> Mapping[str, _Family]:
+    bases: dict[str, str] = {}
+    units: dict[str, dict[str, _Unit]] = {}
+    shown: dict[str, list[str]] = {}
+    lines = files("logbook.plant").joinpath("units.csv").read_text(encoding="utf-8").splitlines()
+    for row in csv.DictReader(lines):
+        family = row["family"]
+        bases.setdefault(family, row["unit"])
+        unit = _Unit(
+            name=row["unit"],
+            factor=_product(row["factor"]) if row["factor"] else 1.0,
+            zero=float(row["zero"] or 0.0),
+            reference=row["reference"],
+            basis=row["basis"],
+            remark=row["remark"],
+            ask=row["ask"],
+            choices=tuple(
+                (answer.strip(), spelling.strip())
+                for answer, _, spelling in (choice.partition("=") for choice in row["choices"].split(";") if choice)
+            ),
+            refusal=_REFUSALS.get(row["refusal"], ""),
+        )
+        known = units.setdefault(family, {})
+        spellings = [row["unit"] or row["spellings"].split()[0], *row["spellings"].split()]
+        for spelling in spellings:
+            known.setdefault(normalised(spelling), unit)
+        # With brackets are the answers to questions; what people write first is the shorter one.
+        if not unit.refusal and "(" not in spellings[0]:
+            shown.setdefault(family, []).append(spellings[0])
+    return {family: _Family(base, units[family], tuple(shown[family])) for family, base in bases.items()}
+
+
+def spellings_of(family: str, canonical_unit: str = "") -> tuple[str, ...]:
+    """The spellings that a family understands, one for each unit; the canonical unit alone where it has no list."""
+    found = _families().get(_family_for(family, canonical_unit))
+    return found.shown if found else ((canonical_unit,) if canonical_unit not in ("", "-") else ())
+
+
+@cache
+def _family_for(family: str, canonical_unit: str) -> str:
+    """A meter that counts kg, Nm3 or kWh takes the spellings of what it counts, whatever its point usually counts."""
+    if family in _METERED and canonical_unit:
+        wanted = normalised(canonical_unit)
+        for candidate in (family, *_METERED):
+            if wanted in _families()[candidate].units:
+                return candidate
+    return family
+
+
+@cache
+def _find(spelling: str, family: str, canonical_unit: str) -> tuple[_Unit | None, _Unit | None]:
+    """The unit that a spelling means in a family, and the family's own row of the canonical unit."""
+    found = _families().get(_family_for(family, canonical_unit))
+    if found is None:
+        return None, None
+    canonical = found.base if canonical_unit in ("", "-") else canonical_unit
+    return found.units.get(normalised(spelling)), found.units.get(normalised(canonical))
 
 
 def convert(
     number: float,
     spelling: str,
     family: str,
-    canonical_unit: str,
     *,
     pressure_reference: str = "",
+    canonical_unit: str = "",
+    answers: Mapping[str, str] = NO_ANSWERS,
     barometer_bar: float | None = None,
-    horsepower: str = "",
-) -> float:
-    """A number with a typed unit in the canonical unit of its point. Raises UnitRefused.
+    span: tuple[float, float] | None = None,
+) -> Conversion:
+    """A typed number in the canonical unit of its point.
 
-    A pressure typed as absolute on a gauge point (or the reverse) needs the barometer of that moment [bar].
+    `spelling` may be empty: then the number is in the canonical unit, or in the unit that `answers` names for bare
+    numbers; a bare number that looks like another unit is asked about. `canonical_unit` is the base unit of the family
+    if left out. `answers` holds what was answered before for this point, by key of the question. `span` holds the least
+    and greatest possible number [canonical unit], to tell a degF gauge from a hot one. Nothing raises: an unknown
+    spelling is a refusal that lists the known ones.
     """
-    unit = unit_of(spelling, family, horsepower=horsepower)
-    value = number * unit.factor + unit.offset
-    if unit.reference and pressure_reference in (_GAUGE, _ABSOLUTE) and unit.reference != pressure_reference:
-        if barometer_bar is None:
-            raise UnitRefused(
-                f"'{spelling.strip()}' is {unit.reference}, this reading is {pressure_reference}: without a barometer"
-                f" it cannot be converted. Type it as {pressure_reference}."
-            )
-        value += barometer_bar if pressure_reference == _ABSOLUTE else -barometer_bar
-    canonical = FAMILIES.get(family, {}).get(normal(canonical_unit))
-    return value if canonical is None else (value - canonical.offset) / canonical.factor
+    if not spelling or not normalised(spelling):
+        remembered = answers.get(BARE, "")
+        if not remembered:
+            return _bare(number, family, canonical_unit, pressure_reference, span)
+        spelling = remembered
+    unit, canonical = _find(spelling, family, canonical_unit)
+    if unit is None:
+        if canonical_unit and normalised(spelling) == normalised(canonical_unit):
+            return Conversion(number, canonical_unit, pressure_reference)
+        return Conversion(None, refusal=_unknown(spelling, family, canonical_unit))
+    if unit.refusal:
+        return Conversion(None, unit.name, refusal=unit.refusal)
+    if unit.ask:
+        meaning = partial(
+            convert,
+            number,
+            family=family,
+            pressure_reference=pressure_reference,
+            canonical_unit=canonical_unit,
+            answers=answers,
+            barometer_bar=barometer_bar,
+        )
+        meant = dict(unit.choices).get(answers.get(unit.ask, ""))
+        if meant is not None:
+            return meaning(meant)
+        choices = tuple(Choice(answer, meant, meaning(meant).number) for answer, meant in unit.choices)
+        return Conversion(None, ask=_question(number, spelling, unit.ask, choices, canonical_unit or _base(family)))
+    if canonical is None:
+        return Conversion(None, refusal=_unknown(spelling, family, canonical_unit))
+    if unit.basis and canonical.basis and unit.basis != canonical.basis:
+        reason = _OTHER_BASIS[_family_for(family, canonical_unit)]
+        return Conversion(None, unit.name, refusal=f"{reason}: enter it in {canonical.name}.")
+    value = number if unit is canonical else canonical.from_base(unit.to_base(number))
+    if not math.isfinite(value):
+        return Conversion(None, unit.name, refusal=f"{number:g} {spelling} is no possible number.")
+    if family in _ABSOLUTE_FAMILIES:
+        return _referred(value, unit, canonical, family, pressure_reference, barometer_bar)
+    return Conversion(value, unit.name, remark=unit.remark)
 
 
-def split_quantity(text: str) -> tuple[str, str] | None:
-    """`208degF` as (`208`, `degF`): the number as text and what follows; None where no number leads."""
-    match = _QUANTITY.fullmatch(text)
-    return (match[1], match[2]) if match else None
+def _referred(
+    value: float, unit: _Unit, canonical: _Unit, family: str, wanted: str, barometer_bar: float | None
+) -> Conversion:
+    """A pressure brought to the reference of its point: gauge or absolute is part of the reading's definition."""
+    typed = unit.reference
+    if not typed or not wanted or typed == wanted or (wanted == "differential" and typed == "gauge"):
+        return Conversion(value, unit.name, wanted or typed, unit.remark)
+    if wanted == "differential":
+        return Conversion(
+            None, unit.name, refusal=f"A differential pressure is not absolute: enter it in {canonical.name}."
+        )
+    if barometer_bar is None:
+        return Conversion(
+            None,
+            unit.name,
+            refusal=f"{unit.name} is {typed} and this point is {wanted} pressure: enter the barometer first, "
+            f"or {'what the gauge shows' if wanted == 'gauge' else 'the absolute pressure'} in {canonical.name}.",
+        )
+    barometer = barometer_bar * _ABSOLUTE_FAMILIES[family] / canonical.factor
+    moved = value - barometer if typed == "absolute" else value + barometer
+    return Conversion(moved, unit.name, wanted, f"{typed} to {wanted} with the barometer at {barometer_bar:g} bar")
 
 
-def parse_quantity(text: str, family: str, canonical_unit: str = "", *, horsepower: str = "") -> float:
-    """`208degF` or `12,5` in the canonical unit; without a unit it is canonical already. Raises UnitRefused."""
-    apart = split_quantity(text)
-    if apart is None:
-        raise UnitRefused(f"'{text}' is no number; a number is expected, with a unit or without.")
-    number = float(apart[0].replace(",", "."))
-    if not apart[1]:
-        return number
-    return convert(number, apart[1], family, canonical_unit, horsepower=horsepower)
+def _base(family: str) -> str:
+    found = _families().get(family)
+    return found.base if found else ""
+
+
+def _unknown(spelling: str, family: str, canonical_unit: str) -> str:
+    known = spellings_of(family, canonical_unit)
+    if not known:
+        return f"'{spelling}' is not understood: this point has no unit, enter the number alone."
+    return f"'{spelling}' is no unit of this point. Understood: {', '.join(known)}, or the number alone."
+
+
+def _question(number: float, spelling: str, key: str, choices: tuple[Choice, ...], unit: str) -> Ask:
+    meanings = " or ".join(
+        choice.answer if choice.number is None else f"{choice.answer} ({choice.number:.5g} {unit})"
+        for choice in choices
+    )
+    return Ask(key, "unit_asked", f"{number:.10g} {spelling}: {meanings}?", choices)
+
+
+# What a number without a unit looks like, by family: other unit, least, greatest, key of the finding.
+_LOOKS = {
+    "barometer": (("mmHg", 700.0, 800.0, "looks_like_mmhg"), ("inHg", 25.0, 32.0, "looks_like_inhg")),
+    "calorific value": (
+        ("kcal/kg", 9_000.0, 12_500.0, "looks_like_kcal"),
+        ("kJ/kg", 18_000.0, 51_000.0, "read_as_kj_kg"),
+    ),
+    "density": (("kg/L", 0.7, 1.1, "read_as_kg_l"),),
+}
+# The same, for what only shows against the span of the point.
+_LOOKS_ABOVE_SPAN = {"temperature": ("degF", "looks_like_fahrenheit"), "content": ("ppm", "looks_like_ppm")}
+_UNDERSTOOD = ("read_as_kj_kg", "read_as_kg_l")
+"""Not to be doubted: taken as the other unit, and said."""
+ASKED_WHEN_BARE = frozenset(_LOOKS)
+"""Families in which a number without a unit may look like another unit, whatever the span of the point."""
+
+
+def _bare(
+    number: float, family: str, canonical_unit: str, reference: str, span: tuple[float, float] | None
+) -> Conversion:
+    """A number without a unit: in the canonical unit, with a question where it looks like another."""
+    unit = canonical_unit or _base(family)
+    if family not in ASKED_WHEN_BARE and (span is None or family not in _LOOKS_ABOVE_SPAN):
+        return Conversion(number, unit, reference)
+    looks = [(other, key) for other, least, greatest, key in _LOOKS.get(family, ()) if least <= number <= greatest]
+    if family in _LOOKS_ABOVE_SPAN:
+        other, key = _LOOKS_ABOVE_SPAN[family]
+        inside = convert(number, other, family, canonical_unit=canonical_unit).number
+        if span and inside is not None and number > span[1] >= inside >= span[0]:
+            looks.append((other, key))
+    if not looks:
+        return Conversion(number, unit, reference)
+    other, key = looks[0]
+    otherwise = convert(number, other, family, canonical_unit=canonical_unit, pressure_reference=reference).number
+    if key in _UNDERSTOOD:
+        return Conversion(otherwise, other, remark=f"taken as {other}")
+    choices = (Choice(unit, unit, number), Choice(other, other, otherwise))
+    sentence = f"{number:.10g} looks like {other} ({otherwise:.5g} {unit}). Is it {unit} or {other}?"
+    return Conversion(number, unit, reference, ask=Ask(BARE, key, sentence, choices))
+
+
+def parse_quantity(
+    text: str,
+    family: str,
+    *,
+    pressure_reference: str = "",
+    canonical_unit: str = "",
+    answers: Mapping[str, str] = NO_ANSWERS,
+    barometer_bar: float | None = None,
+    decimal: str = ".",
+) -> Conversion:
+    """`208degF`, `12,5 MW` or `0.85`: number and unit split and converted, as `convert` does."""
+    found = split_number(text.strip(), decimal)
+    if found is None:
+        known = ", ".join(spellings_of(family, canonical_unit))
+        return Conversion(
+            None, refusal=f"'{text}' is no number{f' with a unit of this list: {known}' if known else ''}."
+        )
+    number, unit = found
+    if number.other is not None:
+        return Conversion(
+            None,
+            refusal=f"'{text}' is {number.value:.10g} or {number.other:.10g}: leave out the sign that parts thousands, "
+            "or write one more decimal.",
+        )
+    return convert(
+        number.value,
+        unit.strip(),
+        family,
+        pressure_reference=pressure_reference,
+        canonical_unit=canonical_unit,
+        answers=answers,
+        barometer_bar=barometer_bar,
+    )
