@@ -60,6 +60,19 @@ _UNKNOWN_TO_THE_EMULATOR = re.compile(rb"\x1b\[[<=][0-9;]*[a-zA-Z]")
 _UNFINISHED = re.compile(rb"\x1b(\[[<=>?0-9;]*\$?)?\Z")
 
 
+class _Screen(pyte.Screen):
+    def scroll_up(self, count: int = 1) -> None:
+        """CSI S, which tmux clears the screen with and the emulator lacks."""
+        row, column = self.cursor.y, self.cursor.x
+        self.cursor.y = self.margins.top if self.margins else 0
+        self.delete_lines(count)
+        self.cursor.y, self.cursor.x = row, column
+
+
+class _Stream(pyte.ByteStream):
+    csi = pyte.ByteStream.csi | {"S": "scroll_up"}
+
+
 class TerminalScreen:
     """A command running in a pseudo-terminal of its own."""
 
@@ -78,8 +91,8 @@ class TerminalScreen:
         `replies`: what the terminal answers, by the query it is asked; by itself it answers nothing.
         """
         self._replies = dict(replies or {})
-        self._screen = pyte.Screen(columns, rows)
-        self._stream = pyte.ByteStream(self._screen)
+        self._screen = _Screen(columns, rows)
+        self._stream = _Stream(self._screen)
         self.output = bytearray()
         """Every byte received, in order."""
         self._pending = b""

@@ -36,6 +36,13 @@ _TOKEN = re.compile(
 # Reset, and the terminal's own colours, in the spellings that Rich has for them.
 _PLAIN = frozenset({"", "0", "39", "49", "39;49"})
 
+# Asked for by Textual and not passed on. The kitty keyboard (>, <) and the report of focus (1004) would stay on in the
+# person's terminal when the line drops, and fill the next command line with codes; old consoles print them.
+_NOT_ASKED_FOR = ("\x1b[>", "\x1b[<", "\x1b[?1004")
+
+# A link (8) is not drawn and costs its address; the shape of the pointer (22) is for a mouse.
+_NOT_NEEDED = ("\x1b]8;", "\x1b]22;")
+
 # ASCII in the terminal's first character set, plain style, no wrapping, no cursor, an empty screen: whatever a
 # disturbed line or another program left behind.
 _ANEW = "\x1b(B\x0f\x1b[m\x1b[?7l\x1b[?25l\x1b[2J"
@@ -67,7 +74,9 @@ class ChangedCellsDriver(LinuxDriver):
         if data in (SYNC_START, SYNC_END):
             # Textual writes these only where the terminal understands them; they are sent around what is sent.
             self._synchronised = True
-        elif data.startswith(("\x1b[?", "\x1b[<", "\x1b[>")):
+        elif data.startswith(_NOT_ASKED_FOR):
+            return
+        elif data.startswith("\x1b[?"):
             # The input thread writes some of these: they must not touch the grids.
             if data.startswith("\x1b[?1049"):
                 self._forgotten = True
@@ -108,8 +117,8 @@ class ChangedCellsDriver(LinuxDriver):
                 self._style = "" if plain else f"{self._style};{parameters}".lstrip(";")
             elif token.group() == "\n":
                 self._x, self._y = 0, self._y + 1
-            elif command is None or not command.startswith("\x1b]8;"):
-                # The bell, the clipboard, a title. A link (8) is left out: it is not drawn and costs its address.
+            elif command is None or not command.startswith(_NOT_NEEDED):
+                # The bell, the clipboard, a title.
                 passed_on.append(token.group())
         return "".join(passed_on)
 
