@@ -176,7 +176,7 @@ def test_the_terminal_is_left_clean() -> None:
         for mode in (b"1049", b"2004"):
             assert screen.output.rindex(b"\x1b[?" + mode + b"l") > screen.output.rindex(b"\x1b[?" + mode + b"h")
         # What a dropped line would leave on in the terminal, to spoil the next command line.
-        for mode in (b"\x1b[?1004", b"\x1b[>", b"\x1b[<"):
+        for mode in (b"\x1b[?1004", b"\x1b[?2048", b"\x1b[>", b"\x1b[<"):
             assert mode not in screen.output
         assert screen.output.count(b"\x1b[?2026h") == screen.output.count(b"\x1b[?2026l")
 
@@ -196,7 +196,11 @@ def driver(monkeypatch: pytest.MonkeyPatch) -> tuple[ChangedCellsDriver, pyte.Sc
     screen = pyte.Screen(24, 6)
     stream = pyte.Stream(screen)
     monkeypatch.setattr(LinuxDriver, "write", lambda self, data: stream.feed(data))
-    monkeypatch.setattr(LinuxDriver, "__init__", lambda self, app, **_: setattr(self, "_app", app))
+
+    def begin(self: LinuxDriver, app: object, **_: object) -> None:
+        self._app, self._file = app, SimpleNamespace(encoding="utf-8")  # type: ignore[assignment]
+
+    monkeypatch.setattr(LinuxDriver, "__init__", begin)
     app = SimpleNamespace(size=Size(24, 6))
     return ChangedCellsDriver(app), screen  # type: ignore[arg-type]
 
@@ -243,6 +247,18 @@ def test_the_terminal_shows_the_wanted_cells_with_wide_characters(
         assert [[found.buffer[y][x].data for x in range(24)] for y in range(6)] == [
             [characters for characters, _ in row] for row in ours._wanted
         ]
+
+
+@pytest.mark.parametrize(
+    ("encoding", "expected"), [("ascii", "82 ?C ? a"), ("iso8859-1", "82 °C ? a"), ("utf-8", "82 °C ─ a")]
+)
+def test_a_letter_that_the_encoding_lacks_does_not_move_the_others(
+    driver: tuple[ChangedCellsDriver, pyte.Screen], encoding: str, expected: str
+) -> None:
+    ours, found = driver
+    ours._file.encoding = encoding  # type: ignore[misc]
+    ours.write("\x1b[1;1H82 °C ─ a")
+    assert found.display[0].rstrip() == expected
 
 
 def test_all_is_sent_on_resume_even_if_the_app_draws_nothing(

@@ -15,13 +15,11 @@ import re
 from typing import TYPE_CHECKING, Any
 
 from rich.cells import split_graphemes
-from textual import events
 from textual._ansi_sequences import SYNC_END, SYNC_START
 from textual.drivers.linux_driver import LinuxDriver
 
 if TYPE_CHECKING:
     from textual.app import App
-    from textual.message import Message
 
 Cell = tuple[str, str]
 """The character(s) of a cell and the parameters of its style; no character in the second half of a wide one."""
@@ -36,9 +34,10 @@ _TOKEN = re.compile(
 # Reset, and the terminal's own colours, in the spellings that Rich has for them.
 _PLAIN = frozenset({"", "0", "39", "49", "39;49"})
 
-# Asked for by Textual and not passed on. The kitty keyboard (>, <) and the report of focus (1004) would stay on in the
-# person's terminal when the line drops, and fill the next command line with codes; old consoles print them.
-_NOT_ASKED_FOR = ("\x1b[>", "\x1b[<", "\x1b[?1004")
+# Asked for by Textual and not passed on. The kitty keyboard (>, <), the report of focus (1004) and that of the size
+# (2048; a signal tells it as well) would stay on in the person's terminal when the line drops, and fill the next
+# command line with codes; old consoles print them.
+_NOT_ASKED_FOR = ("\x1b[>", "\x1b[<", "\x1b[?1004", "\x1b[?2048")
 
 # A link (8) is not drawn and costs its address; the shape of the pointer (22) is for a mouse.
 _NOT_NEEDED = ("\x1b]8;", "\x1b]22;")
@@ -77,24 +76,22 @@ class ChangedCellsDriver(LinuxDriver):
         elif data.startswith(_NOT_ASKED_FOR):
             return
         elif data.startswith("\x1b[?"):
-            # The input thread writes some of these: they must not touch the grids.
             if data.startswith("\x1b[?1049"):
                 self._forgotten = True
             super().write(data)
         else:
             changes = self._take(data) + self._changes()
             if changes:
+                # A letter that the encoding lacks is one "?": an escape of six letters would move all behind it.
+                assert self._file is not None
+                encoding = self._file.encoding
+                changes = changes.encode(encoding, "replace").decode(encoding)
                 super().write(f"{SYNC_START}{changes}{SYNC_END}" if self._synchronised else changes)
 
     def resume_application_mode(self) -> None:
         super().resume_application_mode()
         # The terminal's other screen begins empty, and Textual does not always draw all of it again.
         self.write("")
-
-    def process_message(self, message: Message) -> None:
-        if isinstance(message, events.Resize):
-            self._forgotten = True
-        super().process_message(message)
 
     def _get_terminal_size(self) -> tuple[int, int]:
         # Asked at the start and whenever the window changed: a terminal may have cut or moved what it showed.
