@@ -8,7 +8,9 @@ from __future__ import annotations
 
 from bisect import bisect_right
 from collections import defaultdict
+from collections.abc import Callable
 from dataclasses import dataclass
+from itertools import pairwise
 from random import Random
 
 from demo_vessel import papers
@@ -122,7 +124,7 @@ class _Generator:
 
     # Time
 
-    def run(self) -> History:
+    def run(self, progress: Callable[[float], None]) -> History:
         marks = {mark.minute: mark.event for mark in self.ship.marks if mark.minute <= MINUTES}
         watches = set(self.watch_ends)
         exchanged = {change.minute for change in self.changes[1:]} | {papers.METER_EXCHANGE}
@@ -132,13 +134,14 @@ class _Generator:
         self._phase_begins = [phase.begin for phase in self.ship.phases]
         read_at = watches | {minute for minute, event in marks.items() if event in papers.VOYAGE_EVENTS} | exchanged
         operation = None
-        for begin, end in zip(ordered, ordered[1:], strict=False):
+        for begin, end in pairwise(ordered):
             if begin == papers.METER_EXCHANGE:
                 self._exchange_meter(begin)
             operation = self._operate(begin, end)
             self._count(operation, begin, end)
             if end in read_at and end < MINUTES:
                 self._read(operation, end, marks.get(end, ""), end in watches)
+                progress(end / MINUTES)
         self._write_notes()
         records: list[Reading | Note] = [*self.readings, *self.notes]
         records.sort(key=lambda record: record.taken_utc)
@@ -250,9 +253,7 @@ class _Generator:
         running = operation.running and mark != "FWE"
         if not running:
             values = self.walk.main_engine_idle("stand-by" if mark == "SBE" else "stopped")
-        elif operation.phase.kind is Kind.MANOEUVRING and mark != "COSP":
-            values = self.walk.main_engine_manoeuvring(operation.rpm, operation.fuel)
-        elif not is_watch and mark == "COSP":
+        elif operation.phase.kind is Kind.MANOEUVRING:
             values = self.walk.main_engine_manoeuvring(operation.rpm, operation.fuel)
         else:
             off = 1.0 + SPEED_SCATTER * self.rng.gauss(0.0, 1.0)
@@ -333,6 +334,6 @@ class _Generator:
         )
 
 
-def generate(seed: int = SEED) -> History:
-    """The whole history. The same seed gives the same records, to the letter."""
-    return _Generator(seed).run()
+def generate(seed: int = SEED, progress: Callable[[float], None] = lambda share: None) -> History:
+    """The whole history. The same seed gives the same records, to the letter. `progress` is told the share done."""
+    return _Generator(seed).run(progress)

@@ -7,6 +7,7 @@ the curves hold at 25 degC suction air and coolant, 1000 mbar and 42.7 MJ/kg.
 from __future__ import annotations
 
 from dataclasses import dataclass
+from itertools import pairwise
 
 from demo_vessel.faults import effect, excess_consumption
 from demo_vessel.fuel import InUse, density, injection_temperature_c
@@ -44,7 +45,7 @@ def interpolated(at: float, points: tuple[tuple[float, float], ...]) -> float:
     """Straight lines between points, held at the ends."""
     if at <= points[0][0]:
         return points[0][1]
-    for (left, low), (right, high) in zip(points, points[1:], strict=False):
+    for (left, low), (right, high) in pairwise(points):
         if at <= right:
             return low + (at - left) / (right - left) * (high - low)
     return points[-1][1]

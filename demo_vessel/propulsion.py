@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import math
+
 RATED_KW = 14070.0
 RATED_RPM = 99.0
 PITCH_M = 5.20
@@ -17,7 +19,7 @@ def heaviness(loaded: bool, beaufort: float, hull: float) -> float:
 
 def speed_rpm(shaft_kw: float, heavy: float) -> float:
     """Speed of the shaft at which the propeller takes a power."""
-    return RATED_RPM * float(max(shaft_kw, 1.0) / (RATED_KW * _DESIGN_LINE * heavy)) ** (1.0 / 3.0)
+    return RATED_RPM * math.pow(max(shaft_kw, 1.0) / (RATED_KW * _DESIGN_LINE * heavy), 1.0 / 3.0)
 
 
 def apparent_slip(loaded: bool, beaufort: float, hull: float) -> float:

@@ -7,6 +7,7 @@ import math
 from bisect import bisect_right
 from collections.abc import Callable, Iterator
 from dataclasses import dataclass, field
+from itertools import pairwise
 from random import Random
 
 from demo_vessel.geography import PORTS, distance_nm, route, sea_temperature_c, zone_min
@@ -208,7 +209,7 @@ def _passage(ship: Voyage, index: int) -> None:
     now = ship.phases[-1].end
     parts = route(start.port, call.port)
     begun_nm = ship.at(now)[2]
-    total_nm = sum(distance_nm(a, b) for part in parts for a, b in zip(part, part[1:], strict=False))
+    total_nm = sum(distance_nm(a, b) for part in parts for a, b in pairwise(part))
     now = _manoeuvre(ship, now, 110, index, "SBE", "COSP", start.port)
     for number, part in enumerate(parts):
         if number:
@@ -251,7 +252,7 @@ def _steam(
     ship.phases.append(Phase(Kind.WORKING_UP, now, sea_begin, index, 0.72 * call.load))
     run_nm = ship.at(now)[2]
     ship.note(now, part[0][0], part[0][1], run_nm)
-    for start, end in zip(part, part[1:], strict=False):
+    for start, end in pairwise(part):
         length, done = distance_nm(start, end), 0.0
         while done < length:
             load = call.load if now >= sea_begin else 0.72 * call.load
@@ -344,7 +345,7 @@ class ShipClock:
     def watch_ends(self) -> list[int]:
         """Moments at which the ship's clock shows 0000, 0400 ... 2000."""
         borders = [0, *self._minutes, MINUTES]
-        ends = []
+        ends: list[int] = []
         for begin, end, offset in zip(borders, borders[1:], self._offsets, strict=False):
             first = begin + (-(begin + offset)) % WATCH_MIN
             ends += range(first, end, WATCH_MIN)
