@@ -8,6 +8,7 @@ every isentrope.
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from typing import Any
 
@@ -49,12 +50,29 @@ _HIGH = np.array(
     ]
 )
 
+
+def _polynomials(seven: Floats) -> Floats:
+    """Coefficients of cp, h and s of each gas as polynomials in T [J/mol ...], lowest power first: (16, 5).
+
+    The division by 2, 3, 4, 5 that integration brings is done once here, so that one Horner scheme serves all three.
+    """
+    a1, a2, a3, a4, a5, a6, a7 = R * seven.T
+    cp = a1, a2, a3, a4, a5
+    h = a6, a1, a2 / 2, a3 / 3, a4 / 4, a5 / 5
+    s_without_logarithm = a7, a2, a3 / 2, a4 / 3, a5 / 4
+    return np.stack([*cp, *h, *s_without_logarithm])
+
+
+_CP, _H, _S = slice(0, 5), slice(5, 11), slice(11, 16)
+_LOW_POLYNOMIALS, _HIGH_POLYNOMIALS = _polynomials(_LOW), _polynomials(_HIGH)
+
 _AIR = np.array([0.78084, 0.20946, 0.00934, 0.0004, 0.0])
 AIR_MOLE_FRACTIONS = _AIR / _AIR.sum()
 """Dry air by moles, normalised, in the order of GASES"""
 M_AIR = float(AIR_MOLE_FRACTIONS @ MOLAR_MASS)
 """Molar mass of dry air [kg/mol]"""
 X_O2 = float(AIR_MOLE_FRACTIONS[1])
+"""Oxygen in dry air by moles"""
 
 AIR_TABLE_H300 = 300.19e3
 AIR_TABLE_S300 = 1702.03
@@ -64,16 +82,19 @@ Thermodynamics, table A-22)"""
 
 @dataclass(frozen=True, slots=True)
 class Mixture:
-    """A mixture by its summed coefficients: what n moles of each gas give together.
+    """A mixture by its summed coefficients: what n moles of each gas give together, per kg of dry air.
 
-    `low` and `high` have the coefficient first (7, ...) and the shape of the states behind it; times R they are in
-    J/K and so on. `gas_constant` = R sum n [J/K], `mass` [kg]; both per kg of dry air.
+    The coefficient runs first, behind it is the shape of the mixtures.
     """
 
     low: Floats
+    """polynomials of cp, h, s below 1000 K, summed over the gases; in J, K and kg"""
     high: Floats
+    """the same from 1000 K on"""
     gas_constant: Floats
+    """G = R sum n [J/K]"""
     mass: Floats
+    """[kg]"""
     datum: Floats
     """enthalpy at 298.15 K [J]"""
 
@@ -81,63 +102,74 @@ class Mixture:
 def mixture(moles: ArrayLike) -> Mixture:
     """The mixture of `moles` [mol per kg dry air], shape (5, ...), in the order of GASES."""
     n = np.asarray(moles, float)
-    low = R * np.tensordot(_LOW.T, n, axes=1)
-    high = R * np.tensordot(_HIGH.T, n, axes=1)
+    low = np.tensordot(_LOW_POLYNOMIALS, n, axes=1)
     return Mixture(
         low=low,
-        high=high,
+        high=np.tensordot(_HIGH_POLYNOMIALS, n, axes=1),
         gas_constant=R * n.sum(axis=0),
         mass=np.tensordot(MOLAR_MASS, n, axes=1),
-        datum=_enthalpy(low, np.asarray(DATUM_K)),
+        datum=_horner(low[_H], np.asarray(DATUM_K)),
     )
 
 
-def _enthalpy(a: Floats, t: Floats) -> Floats:
-    result: Floats = t * (a[0] + t * (a[1] / 2 + t * (a[2] / 3 + t * (a[3] / 4 + t * (a[4] / 5))))) + a[5]
-    return result
+def _horner(coefficients: Floats, t: Floats) -> Floats:
+    """c0 + c1 t + c2 t^2 + ...; in place, for long columns are read here more often than anywhere else."""
+    value: Floats = coefficients[-1] * t
+    for coefficient in coefficients[-2:0:-1]:
+        value += coefficient
+        value *= t
+    value += coefficients[0]
+    return value
 
 
-def _heat_capacity(a: Floats, t: Floats) -> Floats:
-    result: Floats = a[0] + t * (a[1] + t * (a[2] + t * (a[3] + t * a[4])))
-    return result
+def _entropy(branch: Floats, t: Floats) -> Floats:
+    value = _horner(branch[_S], t)
+    value += branch[0] * np.log(t)
+    return value
 
 
-def _entropy(a: Floats, t: Floats) -> Floats:
-    result: Floats = a[0] * np.log(t) + t * (a[1] + t * (a[2] / 2 + t * (a[3] / 3 + t * (a[4] / 4)))) + a[6]
-    return result
+def _by_branch(polynomial: Callable[[Floats, Floats], Floats], mix: Mixture, t: Floats) -> Floats:
+    """The low polynomial below 1000 K and the high one from there on, element by element."""
+    hot = t >= CHANGE_K
+    if not hot.any():
+        return polynomial(mix.low, t)
+    if hot.all():
+        return polynomial(mix.high, t)
+    return np.where(hot, polynomial(mix.high, t), polynomial(mix.low, t))
 
 
-def _branch(mix: Mixture, t: Floats) -> Floats:
-    """Coefficients element by element: low below 1000 K, high from there on."""
-    if np.all(t < CHANGE_K):
-        return mix.low
-    if np.all(t >= CHANGE_K):
-        return mix.high
-    chosen: Floats = np.where(t < CHANGE_K, *np.broadcast_arrays(_fit(mix.low, t), _fit(mix.high, t)))
-    return chosen
+def heat_capacity(mix: Mixture, temperature_k: ArrayLike) -> Floats:
+    """Cp of the mixture [J/K per kg dry air]; temperature [K], 200 to 6000."""
+    return _by_branch(lambda branch, t: _horner(branch[_CP], t), mix, np.asarray(temperature_k, float))
 
 
-def _fit(a: Floats, t: Floats) -> Floats:
-    # A mixture of scalars meets an array of temperatures: its coefficients get as many empty axes.
-    return a.reshape(a.shape + (1,) * (t.ndim - (a.ndim - 1)))
+def enthalpy(mix: Mixture, temperature_k: ArrayLike) -> Floats:
+    """Sensible enthalpy above 298.15 K [J per kg dry air]; temperature [K], 200 to 6000."""
+    return _by_branch(lambda branch, t: _horner(branch[_H], t), mix, np.asarray(temperature_k, float)) - mix.datum
 
 
-def heat_capacity(mix: Mixture, temperature_k: Floats) -> Floats:
-    """Cp of the mixture [J/K per kg dry air]; temperature [K]."""
-    t = np.asarray(temperature_k, float)
-    return _heat_capacity(_branch(mix, t), t)
+def entropy(mix: Mixture, temperature_k: ArrayLike) -> Floats:
+    """Standard entropy without its mixing part [J/K per kg dry air]; temperature [K], 200 to 6000."""
+    return _by_branch(_entropy, mix, np.asarray(temperature_k, float))
 
 
-def enthalpy(mix: Mixture, temperature_k: Floats) -> Floats:
-    """Sensible enthalpy above 298.15 K [J per kg dry air]; temperature [K]."""
-    t = np.asarray(temperature_k, float)
-    return _enthalpy(_branch(mix, t), t) - mix.datum
+def known_temperature(temperature_k: Floats, *others: Floats) -> Floats:
+    """The temperature [K] where it is from 200 to 6000, else NaN; ValueError where it and `others` are scalars."""
+    holds = good(
+        (temperature_k >= 200) & (temperature_k <= 6000),
+        "Enter temperatures in kelvin, from 200 to 6000: there the gas polynomials hold.",
+        temperature_k,
+        *others,
+    )
+    return np.where(holds, temperature_k, np.nan)
 
 
-def entropy(mix: Mixture, temperature_k: Floats) -> Floats:
-    """Standard entropy without its mixing part [J/K per kg dry air]; temperature [K]."""
-    t = np.asarray(temperature_k, float)
-    return _entropy(_branch(mix, t), t)
+def enough_air(lambda_: Floats, *others: Floats) -> Floats:
+    """Lambda where it is 1 or more, else NaN; ValueError where it and `others` (rest of a state) are scalars."""
+    holds = good(
+        lambda_ >= 1, "Enter lambda of 1 or more: below 1 there is not enough air for this model.", lambda_, *others
+    )
+    return np.where(holds, lambda_, np.nan)
 
 
 AIR = mixture(AIR_MOLE_FRACTIONS / M_AIR)
@@ -147,9 +179,13 @@ AIR_GAS_CONSTANT = float(AIR.gas_constant)
 
 
 def oxygen_need(hc_ratio: ArrayLike, oc_ratio: ArrayLike = 0.0) -> Any:
-    """Moles of O2 that burn one mole of CHyOz completely [mol]: 1 + y/4 - z/2."""
-    y, z = floats(hc_ratio, oc_ratio)
-    return shaped(1 + y / 4 - z / 2)
+    """Moles of O2 that burn one mole of CHyOz completely [mol]: 1 + y/4 - z/2; y, z not below zero, result above."""
+    y, z = inputs = floats(hc_ratio, oc_ratio)
+    need = 1 + y / 4 - z / 2
+    holds = good(
+        (y >= 0) & (z >= 0) & (need > 0), "Enter H and O atoms for each C, zero or more, of a fuel that burns.", *inputs
+    )
+    return shaped(np.where(holds, need, np.nan))
 
 
 def fuel_molar_mass(hc_ratio: ArrayLike, oc_ratio: ArrayLike = 0.0) -> Any:
@@ -160,13 +196,13 @@ def fuel_molar_mass(hc_ratio: ArrayLike, oc_ratio: ArrayLike = 0.0) -> Any:
 
 def air_fuel_ratio(hc_ratio: ArrayLike, oc_ratio: ArrayLike = 0.0) -> Any:
     """Stoichiometric dry air [kg per kg of fuel CHyOz]; y, z are atoms of H and O for each C."""
-    need = np.asarray(oxygen_need(hc_ratio, oc_ratio))
-    return shaped(need / X_O2 * M_AIR / fuel_molar_mass(hc_ratio, oc_ratio))
+    return oxygen_need(hc_ratio, oc_ratio) / X_O2 * M_AIR / fuel_molar_mass(hc_ratio, oc_ratio)
 
 
 def fuel_air_ratio(lambda_: ArrayLike, hc_ratio: ArrayLike, oc_ratio: ArrayLike = 0.0) -> Any:
-    """Fuel for each kilogram of dry air at the excess-air ratio lambda [kg/kg]."""
-    return shaped(1.0 / (np.asarray(lambda_, float) * air_fuel_ratio(hc_ratio, oc_ratio)))
+    """Fuel for each kilogram of dry air at the excess-air ratio lambda, 1 or more [kg/kg]."""
+    lam, y, z = floats(lambda_, hc_ratio, oc_ratio)
+    return shaped(1.0 / (enough_air(lam, y, z) * air_fuel_ratio(y, z)))
 
 
 def product_moles(lambda_: ArrayLike, hc_ratio: ArrayLike, oc_ratio: ArrayLike = 0.0) -> Floats:
@@ -174,10 +210,10 @@ def product_moles(lambda_: ArrayLike, hc_ratio: ArrayLike, oc_ratio: ArrayLike =
 
     Raises ValueError for a scalar lambda below 1 (not enough air for this model); in arrays that element is NaN.
     """
-    lam, y, z = floats(lambda_, hc_ratio, oc_ratio)
-    holds = good(lam >= 1, "Lambda is below 1: not enough air for a model of complete combustion.", lam, y, z)
-    fuel = np.asarray(fuel_air_ratio(np.where(holds, lam, np.nan), y, z)) / fuel_molar_mass(y, z)
-    moles = np.stack(np.broadcast_arrays(*(fraction / M_AIR + 0 * fuel for fraction in AIR_MOLE_FRACTIONS)))
+    y, z = floats(hc_ratio, oc_ratio)
+    fuel = np.asarray(fuel_air_ratio(lambda_, y, z) / fuel_molar_mass(y, z))
+    # Where there is no fuel figure there is no mixture at all, hence the added zero that carries the NaN.
+    moles = np.stack([fraction / M_AIR + 0 * fuel for fraction in AIR_MOLE_FRACTIONS])
     moles[1] -= oxygen_need(y, z) * fuel
     moles[3] += fuel
     moles[4] += y / 2 * fuel
@@ -205,12 +241,10 @@ def air_state(temperature_k: ArrayLike) -> GasState:
 
     Temperature [K], 200 to 6000. Scalars outside raise ValueError.
     """
-    (t,) = floats(temperature_k)
-    holds = good((t >= 200) & (t <= 6000), "The gas polynomials hold from 200 to 6000 K.", t)
-    t = np.where(holds, t, np.nan)
+    t = known_temperature(*floats(temperature_k))
     cp = heat_capacity(AIR, t)
-    h = enthalpy(AIR, t) - enthalpy(AIR, np.asarray(300.0)) + AIR_TABLE_H300
-    s0 = entropy(AIR, t) - entropy(AIR, np.asarray(300.0)) + AIR_TABLE_S300
+    h = enthalpy(AIR, t) - enthalpy(AIR, 300.0) + AIR_TABLE_H300
+    s0 = entropy(AIR, t) - entropy(AIR, 300.0) + AIR_TABLE_S300
     k = cp / (cp - AIR_GAS_CONSTANT)
     return GasState(shaped(cp), shaped(k), shaped(h), shaped(h - AIR_GAS_CONSTANT * t), shaped(s0))
 
@@ -223,8 +257,7 @@ def product_state(
     Temperature [K], 200 to 6000; lambda >= 1. Scalars outside raise ValueError.
     """
     t, lam, y, z = floats(temperature_k, lambda_, hc_ratio, oc_ratio)
-    holds = good((t >= 200) & (t <= 6000), "The gas polynomials hold from 200 to 6000 K.", t, lam, y, z)
-    t = np.where(holds, t, np.nan)
+    t, lam = known_temperature(t, lam, y, z), enough_air(lam, t, y, z)
     mix = products(lam, y, z)
     cp = heat_capacity(mix, t) / mix.mass
     gas_constant = mix.gas_constant / mix.mass
