@@ -7,7 +7,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field
-from functools import cache
+from functools import lru_cache
 
 from demo_vessel.records import MINUTES, minute_of
 
@@ -90,18 +90,19 @@ GENERAL_WEAR_PER_YEAR = 0.003
 """Consumption of the main engine grows so much a year, evenly, whatever else happens."""
 
 
-@cache
-def _having(name: str, engine: str, place: str | None) -> tuple[Fault, ...]:
-    return tuple(
-        fault
-        for fault in FAULTS
-        if fault.engine == engine and name in fault.effects and (place is None or fault.place == place)
-    )
+@lru_cache(maxsize=256)
+def _active(engine: str, minute: int) -> tuple[tuple[Fault, float], ...]:
+    """The faults of an engine that stand at a moment, with their size."""
+    return tuple((fault, size) for fault in FAULTS if fault.engine == engine and (size := fault.size(minute)))
 
 
 def effect(name: str, engine: str, minute: int, place: str | None = None) -> float:
     """Sum of one effect on an engine at a moment; `place`: only of faults of that unit."""
-    return sum(fault.effects[name] * fault.size(minute) for fault in _having(name, engine, place))
+    return sum(
+        fault.effects.get(name, 0.0) * size
+        for fault, size in _active(engine, minute)
+        if place is None or fault.place == place
+    )
 
 
 def excess_consumption(engine: str, minute: int) -> float:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections import defaultdict
 from collections.abc import Callable, Iterator, Mapping
 from datetime import datetime
 from typing import Any
@@ -24,26 +25,29 @@ class _Typed:
     def __init__(self, plant: Plant) -> None:
         self._plant = plant
         self._habits = habits_of(plant)
-        self._kept: dict[tuple[str, str, bool, str], dict[str, Any]] = {}
+        self._kept: dict[tuple[str, bool], dict[tuple[str, str], dict[str, Any]]] = defaultdict(dict)
 
     def values(self, values: Mapping[str, str], subject: str) -> dict[str, dict[str, Any]]:
         engine = next((engine for engine in self._plant.engines if engine.id == subject), None)
         running = engine is None or values.get("engine_state") == "running"
-        return {key: self._value(key, text, engine, running) for key, text in values.items()}
+        kept = self._kept[subject, running]
+        return {
+            key: kept.get((key, text)) or self._value(key, text, engine, running, kept) for key, text in values.items()
+        }
 
-    def _value(self, key: str, text: str, engine: Engine | None, running: bool) -> dict[str, Any]:
-        name = key.partition(".")[0]
-        known = (name, engine.id if engine else "", running, text)
-        body = self._kept.get(known)
-        if body is None:
-            point = self._plant.points[name]
-            value, findings = read_typed(text, point, self._habits)
-            if value is None:
-                raise ValueError(f"{key}: '{text}' is no text that a log can hold: {findings[0].sentence}")
-            findings += span_findings(value, point, engine, running=running)
-            body = value.accepting(*(finding.key for finding in findings)).to_body()
-            if point.kind != "counter":
-                self._kept[known] = body
+    def _value(
+        self, key: str, text: str, engine: Engine | None, running: bool, kept: dict[tuple[str, str], dict[str, Any]]
+    ) -> dict[str, Any]:
+        point = self._plant.points[key.partition(".")[0]]
+        value, findings = read_typed(text, point, self._habits)
+        if value is None:
+            raise ValueError(f"{key}: '{text}' is no text that a log can hold: {findings[0].sentence}")
+        findings += span_findings(value, point, engine, running=running)
+        if findings:
+            value = value.accepting(*(finding.key for finding in findings))
+        body = value.to_body()
+        if point.kind != "counter":
+            kept[key, text] = body
         return body
 
 
