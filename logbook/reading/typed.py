@@ -345,10 +345,17 @@ def _for_places(pieces: Sequence[str], places: int) -> list[str]:
             joined.append(piece)
     last = joined[-1]
     if len(joined) == places + 1 and last and not _NUMBER_LIKE.fullmatch(last) and read_state(last) is None:
-        return [f"{piece} {last}" if _NUMBER_LIKE.fullmatch(piece) else piece for piece in joined[:-1]]
+        return [_with_unit(piece, last) for piece in joined[:-1]]
     if len(joined) == 1 and read_state(last) is not None:
         return joined * places
     return joined
+
+
+def _with_unit(piece: str, unit: str) -> str:
+    if not _NUMBER_LIKE.fullmatch(piece):
+        return piece
+    estimate = _ESTIMATE.fullmatch(piece)
+    return f"{estimate[1]} {unit} E" if estimate else f"{piece} {unit}"
 
 
 def _wrong_length(text: str, pieces: Sequence[str], targets: Sequence[str]) -> Finding:
