@@ -81,7 +81,7 @@ def parse_date(text: str, order: str = "year first") -> date:
         if parts is not None:
             year, month, day = (int(part) for part in parts)
             try:
-                found = date(year + (2000 if year < 100 else 0), month, day)
+                found = date(year + (2000 if len(parts[0]) <= 2 else 0), month, day)
             except ValueError:
                 found = None
             if found is not None and found.year in _YEARS:
