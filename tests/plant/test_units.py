@@ -256,6 +256,7 @@ def test_what_the_trade_types(typed: str, key: str, expected: float) -> None:
         *[(f"2 {unit}", "gas volume", "Nm3", 2.0) for unit in ("Nm3", "nm3", "mn3")],
         *[(f"2 {unit}", "gas volume", "Nm3", 2 * 273.15 / 288.15) for unit in ("Sm3", "sm3", "scm")],
         ("2 Nm3", "gas volume", "Sm3", 2 * 288.15 / 273.15),  # ISO 13443 conditions
+        ("6024.19 Nm3", "gas volume", "Sm3", 6355.01),  # 1250 m3 at 4.2 bar gauge and 18 degC, by arithmetic
         *[(f"2 {unit}", "flow", "L/h", 2.0) for unit in ("l/h", "lph")],
         ("2 m3/h", "flow", "L/h", 2000.0),
         ("2 kg/h", "flow", "kg/h", 2.0),
