@@ -26,6 +26,8 @@ class Fault:
     ended_by: str
     """word of the entry that ended it"""
     effects: Mapping[str, float] = field(default_factory=dict)
+    grows: bool = True
+    """evenly from its beginning to its end; else it stands at full size all the time"""
 
     @property
     def begin(self) -> int:
@@ -36,9 +38,11 @@ class Fault:
         return minute_of(self.ends) if self.ends else MINUTES
 
     def size(self, minute: int) -> float:
-        """0 before and after; grows evenly to 1 at its end."""
+        """0 before and after; 1 at its end."""
         if not self.begin <= minute < self.end:
             return 0.0
+        if not self.grows:
+            return 1.0
         return (minute - self.begin) / (self.end - self.begin)
 
 
@@ -68,6 +72,11 @@ FAULTS = (
             "sfoc": 0.014, "unit_exhaust_k": 16.0, "unit_compression": -0.13, "unit_maximum_pressure_bar": -6.0,
             "crankcase_mbar": 1.1,
         },
+    ),
+    Fault(
+        # Both change-overs are in the book; the effect is that of the lot's true value (fuel.py).
+        "low_calorific_value", "fuel", "ME", "R15", "2026-04-18 09:20", "2026-06-14 18:30", "change_over",
+        {"calorific_value": -0.019}, grows=False,
     ),
     Fault(
         "heavy_running", "hull", "ME", "", "2026-07-05 00:00", "2026-08-23 12:00", "hull_cleaned",

@@ -16,10 +16,11 @@ class Counter:
         self._value = start
         self._modulus = 10.0 ** (digits - decimals)
         self._decimals = decimals
-        self._factor = 1.0 + error
+        self.error = error
+        """relative, constant"""
 
     def add(self, quantity: float) -> None:
-        self._value = (self._value + quantity * self._factor) % self._modulus
+        self._value = (self._value + quantity * (1.0 + self.error)) % self._modulus
 
     def text(self) -> str:
         """What the drum shows: the last place is cut off, not rounded."""
@@ -29,7 +30,7 @@ class Counter:
     def exchange(self, opening: float, error: float) -> tuple[int, int]:
         """A new meter in its place: closing reading of the old one, opening reading of the new one."""
         closing = math.floor(self._value)
-        self._value, self._factor = opening, 1.0 + error
+        self._value, self.error = opening, error
         return closing, math.floor(opening)
 
 

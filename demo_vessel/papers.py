@@ -169,7 +169,7 @@ def _ending(fault: Fault) -> Draft:
 def work_notes() -> Iterator[Draft]:
     """What ended the faults, further work, remarks."""
     for fault in FAULTS:
-        if fault.ended_by:
+        if fault.ended_by in _ENDINGS:
             yield _ending(fault)
     for kind, subject, when, body in _FURTHER:
         yield kind, subject, minute_of(when), body
@@ -223,5 +223,4 @@ def sounding_notes(changes: list[ChangeOver], consumption: Consumption, seed: in
         for tank, (mass, density15) in _tanks(changes, consumption, minute).items():
             celsius = _TANK_C.get(tank, _STORAGE_C) + rng.gauss(0.0, 1.0)
             volume = max(0.0, mass * 1000.0 / density(density15, celsius) + rng.gauss(0.0, 0.3))
-            values = {f"tank_volume.{tank}": f"{volume:.1f}", f"tank_temperature.{tank}": f"{celsius:.0f}"}
-            yield "sounding", tank, minute, {"values": values}
+            yield "sounding", tank, minute, {"volume_m3": round(volume, 1), "temperature_c": round(celsius)}

@@ -119,7 +119,7 @@ class Walk:
             "jacket_water_inlet_temperature": gauges.read("jacket in", 72.0 + 1.0 * load, 0.6, 1),
             "jacket_water_outlet_temperature": gauges.read("jacket out", 83.5 + 2.0 * load, 0.6, 1),
             "jacket_water_pressure": gauges.read("jacket pressure", 3.6, 0.04, 0.1),
-            "thrust_bearing_temperature": gauges.read("thrust", 47.0 + 9.0 * load, 0.7, 1),
+            "thrust_bearing_temperature.1": gauges.read("thrust", 47.0 + 9.0 * load, 0.7, 1),
             "shaft_generator_power": (
                 gauges.read("shaft generator", spot.shaft_generator_kw, 0.01 * spot.shaft_generator_kw, 5)
                 if spot.shaft_generator_kw

@@ -47,6 +47,9 @@ class Slips:
         if reading.engine != "ME" or not steady or self._rng.random() >= _SLIPPED:
             return [right]
         key, wrong, reason = self._slip(values)
+        while wrong == values[key]:
+            # Two like figures changed over are no slip.
+            key, wrong, reason = self._slip(values)
         slipped = replace(right, values=values | {key: wrong})
         amended = replace(right, amendment_reason=reason)
         return [slipped, amended] if self._rng.random() < 0.6 else [slipped]

@@ -57,18 +57,15 @@ def entries(history: History, plant: Plant, first_number: int) -> Iterator[NewEn
     numbers: dict[tuple[str, datetime], int] = {}
     for number, record in enumerate(history.records, first_number):
         if isinstance(record, Note):
-            yield _noted(record, typed)
+            yield _noted(record)
             continue
         of = (record.engine, record.taken_utc)
         yield _read(record, typed, numbers[of] if record.amendment_reason else None)
         numbers[of] = number
 
 
-def _noted(note: Note, typed: _Typed) -> NewEntry:
-    body = dict(note.body)
-    if "values" in body:
-        body["values"] = typed.values(body["values"], note.subject)
-    return NewEntry(note.kind, note.subject, note.taken_utc, note.utc_offset_min, note.person, body, source=SOURCE)
+def _noted(note: Note) -> NewEntry:
+    return NewEntry(note.kind, note.subject, note.taken_utc, note.utc_offset_min, note.person, note.body, source=SOURCE)
 
 
 def _read(reading: Reading, typed: _Typed, replaces: int | None) -> NewEntry:
