@@ -1,5 +1,7 @@
 """Gas properties against independent calculations and a general reference library."""
 
+from collections.abc import Callable
+
 import cantera as ct
 import numpy as np
 import pytest
@@ -12,11 +14,11 @@ RNG_T = st.floats(210, 3000)
 
 
 @pytest.mark.parametrize(
-    ("name", "cp_298", "cp_1000", "rise"),
-    [("N2", 29.1242, 32.6828, 21.465), ("O2", 29.3782, 34.8830, 22.707), ("CO2", 37.1352, 54.3209, 33.397),
-     ("H2O", 33.5875, 41.2947, 26.003)],
+    ("name", "cp_298", "cp_1000", "rise", "formation"),
+    [("N2", 29.1242, 32.6828, 21.465, 0), ("O2", 29.3782, 34.8830, 22.707, 0),
+     ("CO2", 37.1352, 54.3209, 33.397, -393.508), ("H2O", 33.5875, 41.2947, 26.003, -241.825)],
 )  # fmt: skip
-def test_single_gases(name: str, cp_298: float, cp_1000: float, rise: float) -> None:
+def test_single_gases(name: str, cp_298: float, cp_1000: float, rise: float, formation: float) -> None:
     """Calculated independently with cantera 3.2 (file nasa_gas.yaml)."""
     moles = np.zeros(5)
     moles[gas.GASES.index(name)] = 1
@@ -24,6 +26,15 @@ def test_single_gases(name: str, cp_298: float, cp_1000: float, rise: float) -> 
     assert gas.heat_capacity(mix, 298.15) == pytest.approx(cp_298, rel=1e-4)
     assert gas.heat_capacity(mix, 1000.0) == pytest.approx(cp_1000, rel=1e-4)
     assert gas.enthalpy(mix, 1000.0) / 1e3 == pytest.approx(rise, abs=1e-3)
+    assert mix.datum / 1e3 == pytest.approx(formation, abs=2e-3)
+
+
+def test_dry_air_as_a_mixture() -> None:
+    """Mole fractions normalised from 1.00004; calculated independently by arithmetic."""
+    assert gas.X_O2 == pytest.approx(0.209452, abs=5e-7)
+    assert gas.M_AIR * 1e3 == pytest.approx(28.96633, abs=5e-6)
+    assert pytest.approx(287.039, abs=1e-3) == gas.AIR_GAS_CONSTANT
+    assert gas.X_O2 * gas.MOLAR_MASS[1] / gas.M_AIR == pytest.approx(0.23137, abs=5e-6)
 
 
 @pytest.mark.parametrize(
@@ -51,16 +62,29 @@ def test_dry_air(t: float, cp: float, k: float, h: float, u: float, s0: float) -
 
 
 @pytest.mark.parametrize(
-    ("lam", "fractions", "states"),
+    ("lam", "molar_mass", "fractions", "states"),
     [
-        (2.0, (0.75623, 0.10143, 0.00905, 0.07034, 0.06296), ((1031.21, 1.3847), (1201.26, 1.3132), (1317.95, 1.2778))),
-        (3.0, (0.76425, 0.13667, 0.00914, 0.04752, 0.04242), ((1022.61, 1.3895), (1181.52, 1.3204), (1291.57, 1.2853))),
+        (
+            2.0,
+            29.0216,
+            (0.75623, 0.10143, 0.00905, 0.07034, 0.06296),
+            ((1031.21, 1.3847), (1201.26, 1.3132), (1317.95, 1.2778)),
+        ),
+        (
+            3.0,
+            29.0036,
+            (0.76425, 0.13667, 0.00914, 0.04752, 0.04242),
+            ((1022.61, 1.3895), (1181.52, 1.3204), (1291.57, 1.2853)),
+        ),
     ],
 )
-def test_lean_products(lam: float, fractions: tuple[float, ...], states: tuple[tuple[float, float], ...]) -> None:
+def test_lean_products(
+    lam: float, molar_mass: float, fractions: tuple[float, ...], states: tuple[tuple[float, float], ...]
+) -> None:
     """CH1.8; calculated independently with numpy on the same polynomials."""
     moles = gas.product_moles(lam, 1.8)
     assert moles / moles.sum() == pytest.approx(fractions, abs=1e-5)
+    assert gas.products(lam, 1.8).mass / moles.sum() * 1e3 == pytest.approx(molar_mass, abs=1e-4)
     for t, (cp, k) in zip((300, 1000, 1800), states, strict=True):
         state = gas.product_state(t, lam, 1.8)
         assert state.cp == pytest.approx(cp, rel=1e-4)
@@ -91,11 +115,33 @@ def test_octane_needs_what_the_textbook_says() -> None:
     assert 1.5 * gas.air_fuel_ratio(18 / 8) == pytest.approx(22.6, rel=5e-3)
 
 
-def test_the_branches_meet_at_1000_k() -> None:
-    mix = gas.products(2.0, 1.8)
-    below = np.nextafter(1000.0, 0)
+@pytest.mark.parametrize("name", gas.GASES)
+def test_the_branches_meet_at_1000_k(name: str) -> None:
+    """Each gas within 5e-9 in cp, h and s, h with its formation part; calculated independently by arithmetic."""
+    moles = np.zeros(5)
+    moles[gas.GASES.index(name)] = 1
+    mix = gas.mixture(moles)
+    below, above = np.nextafter(1000.0, 0), 1000.0
+    assert gas.heat_capacity(mix, below) == pytest.approx(gas.heat_capacity(mix, above), rel=5e-9)
+    assert gas.entropy(mix, below) == pytest.approx(gas.entropy(mix, above), rel=5e-9)
+    absolute = [gas.enthalpy(mix, t) + mix.datum for t in (below, above)]
+    assert absolute[0] == pytest.approx(absolute[1], rel=5e-9)
+
+
+@given(st.lists(st.floats(900, 1100), min_size=2, max_size=8))
+def test_each_element_takes_its_own_branch(temperatures: list[float]) -> None:
+    t = np.array(temperatures)
     for function in (gas.heat_capacity, gas.enthalpy, gas.entropy):
-        assert function(mix, below) == pytest.approx(function(mix, 1000.0), rel=2e-8)
+        assert function(gas.AIR, t).tolist() == [function(gas.AIR, each) for each in temperatures]
+
+
+@given(st.floats(250, 999) | st.floats(1001, 3000), st.floats(1.0, 5.0), st.floats(1.4, 4.0))
+def test_heat_capacity_is_the_slope_of_enthalpy_and_entropy(t: float, lam: float, y: float) -> None:
+    """dh = cp dT and ds = cp dT/T, by central differences of our own polynomials on either side of their seam."""
+    mix, step = gas.products(lam, y), 0.01
+    cp = gas.heat_capacity(mix, t)
+    assert (gas.enthalpy(mix, t + step) - gas.enthalpy(mix, t - step)) / (2 * step) == pytest.approx(cp, rel=1e-5)
+    assert (gas.entropy(mix, t + step) - gas.entropy(mix, t - step)) / (2 * step) == pytest.approx(cp / t, rel=1e-5)
 
 
 @given(st.lists(RNG_T, min_size=1, max_size=6))
@@ -106,24 +152,54 @@ def test_arrays_and_floats_agree(temperatures: list[float]) -> None:
     assert isinstance(single[0].h, float)
 
 
-def test_impossible_states() -> None:
-    with pytest.raises(ValueError, match="not enough air"):
-        gas.products(0.9, 1.8)
-    with pytest.raises(ValueError, match="200 to 6000"):
-        gas.air_state(100.0)
-    found = gas.product_state(np.array([1000.0, 1000.0, 50.0]), np.array([2.0, 0.5, 2.0]), 1.8)
-    assert np.isfinite(found.h).tolist() == [True, False, False]
+@pytest.mark.parametrize(
+    ("call", "sentence"),
+    [
+        (lambda: gas.products(0.9, 1.8), "not enough air"),
+        (lambda: gas.product_state(1000.0, 0.99, 1.8), "not enough air"),
+        (lambda: gas.product_state(20.0, 2.0, 1.8), "200 to 6000"),
+        (lambda: gas.air_state(100.0), "200 to 6000"),
+        (lambda: gas.air_fuel_ratio(-1.8), "zero or more"),
+        (lambda: gas.air_fuel_ratio(0.0, 2.0), "a fuel that burns"),
+    ],
+)
+def test_impossible_scalars_are_refused_with_what_to_enter(call: Callable[[], object], sentence: str) -> None:
+    with pytest.raises(ValueError, match=sentence):
+        call()
+
+
+def test_impossible_elements_of_arrays_become_nan() -> None:
+    found = gas.product_state(np.array([1000.0, 1000.0, 50.0, np.nan]), np.array([2.0, 0.5, 2.0, 2.0]), 1.8)
+    assert np.isfinite([found.cp, found.k, found.h, found.u, found.s0]).tolist() == [[True, False, False, False]] * 5
+    # One bad number among arrays is a column of NaN, not an error.
+    assert np.isnan(gas.product_state(np.array([900.0, 1000.0]), 0.5, 1.8).h).all()
+    assert np.isfinite(gas.air_fuel_ratio(np.array([1.8, -1.0]))).tolist() == [True, False]
+
+
+SPECIES = {species.name: species for species in ct.Species.list_from_file("nasa_gas.yaml")}
+
+
+def cantera_gas() -> ct.Solution:
+    """The same species file, read by cantera itself: another road to the same numbers."""
+    return ct.Solution(thermo="ideal-gas", species=[SPECIES[name] for name in gas.GASES])
 
 
 @pytest.mark.parametrize("t", [280.0, 450.0, 900.0, 1500.0, 2400.0])
-def test_live_against_cantera(t: float) -> None:
-    """The same species file, read by cantera itself, another road to the same numbers."""
-    species = {s.name: s for s in ct.Species.list_from_file("nasa_gas.yaml")}
-    mix = ct.Solution(thermo="ideal-gas", species=[species[name] for name in gas.GASES])
-    moles = gas.product_moles(2.4, 1.85)
-    reference = ct.Solution(thermo="ideal-gas", species=[species[name] for name in gas.GASES])
-    reference.TPX = gas.DATUM_K, 1e5, moles
+@pytest.mark.parametrize("lam", [None, 1.0, 2.4])
+def test_live_against_cantera(t: float, lam: float | None) -> None:
+    """cp, h, u and s of dry air (no lambda) and of products, per kilogram of gas, above 298.15 K."""
+    moles = gas.AIR_MOLE_FRACTIONS if lam is None else gas.product_moles(lam, 1.85)
+    mix, reference = cantera_gas(), cantera_gas()
     mix.TPX = t, 1e5, moles
-    state = gas.product_state(t, 2.4, 1.85)
+    reference.TPX = gas.DATUM_K, 1e5, moles
+    if lam is None:
+        state, datum = gas.air_state(t), gas.air_state(gas.DATUM_K)
+        h, s0, u = state.h - datum.h, state.s0 - datum.s0, state.u - datum.u
+    else:
+        state, datum = gas.product_state(t, lam, 1.85), gas.product_state(gas.DATUM_K, lam, 1.85)
+        h, s0, u = state.h, state.s0 - datum.s0, state.u
     assert state.cp == pytest.approx(mix.cp_mass, rel=1e-6)
-    assert state.h == pytest.approx(mix.enthalpy_mass - reference.enthalpy_mass, rel=1e-6, abs=1.0)
+    assert state.k == pytest.approx(mix.cp_mass / mix.cv_mass, rel=1e-6)
+    assert h == pytest.approx(mix.enthalpy_mass - reference.enthalpy_mass, rel=1e-6, abs=1.0)
+    assert u == pytest.approx(mix.int_energy_mass - reference.int_energy_mass, rel=1e-6, abs=1.0)
+    assert s0 == pytest.approx(mix.entropy_mass - reference.entropy_mass, rel=1e-6, abs=1e-3)
