@@ -18,7 +18,7 @@ from demo_vessel.electrical import Switchboard, demand_kw
 from demo_vessel.faults import excess_consumption, hull_factor
 from demo_vessel.fuel import ChangeOver, InUse, change_overs, density, in_use
 from demo_vessel.geography import PORTS
-from demo_vessel.instruments import Counter, Gauges
+from demo_vessel.instruments import Gauges
 from demo_vessel.machinery import (
     SETS,
     Conditions,
@@ -30,7 +30,15 @@ from demo_vessel.machinery import (
 )
 from demo_vessel.propulsion import RATED_KW, speed_rpm
 from demo_vessel.records import MINUTES, History, MonthTruth, Note, Reading, SpanTruth, moment
-from demo_vessel.rounds import MainEngineCounters, Reader, SetCounters, Spot, Walk, meter_temperatures_c
+from demo_vessel.rounds import (
+    MainEngineCounters,
+    Reader,
+    Spot,
+    Walk,
+    meter_temperatures_c,
+    set_counters,
+    set_meters,
+)
 from demo_vessel.slips import Slips
 from demo_vessel.voyage import ITINERARY, Kind, Phase, ShipClock, clock_changes, sail
 
@@ -87,15 +95,8 @@ class _Generator:
         self.walk = Walk(Gauges(seed))
         self.slips = Slips(seed)
         self.counters = MainEngineCounters()
-        self.set_counters = {
-            name: SetCounters(Counter(kwh, 8, error=error), Counter(hours, 6, 1))
-            for name, kwh, hours, error in (
-                ("AE1", 9_412_310, 24_618.2, 0.001),
-                ("AE2", 9_876_145, 25_730.9, -0.002),
-                ("AE3", 8_903_777, 23_402.4, 0.0015),
-            )
-        }
-        self.set_meters = {"AE_in": Counter(20_815_402, 8, error=0.001), "AE_out": Counter(15_230_776, 8)}
+        self.set_counters = set_counters()
+        self.set_meters = set_meters()
         self.readings: list[Reading] = []
         self.notes: list[Note] = [
             Note(
@@ -160,6 +161,7 @@ class _Generator:
         demand = demand_kw(phase.kind, sea_c, two_ashore) * (1.0 + 0.025 * self.rng.gauss(0.0, 1.0))
         set_kw = {name: demand / len(supply.running) for name in supply.running}
         set_fuel = sum(set_fuel_kg_h(name, power, conditions, fuel, middle) for name, power in set_kw.items())
+        set_fuel *= 1.0 + 0.004 * self.rng.gauss(0.0, 1.0)
         rpm = shaft = brake = take_off = consumption = 0.0
         if phase.kind not in (Kind.PORT, Kind.ANCHORAGE):
             order = phase.load * self.ship.weather.load_factor(steady) * (1.0 + load_noise)

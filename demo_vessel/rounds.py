@@ -44,6 +44,23 @@ class SetCounters:
     running_hours: Counter
 
 
+def set_counters() -> dict[str, SetCounters]:
+    """Totalisers of the sets as they stand at the beginning."""
+    return {
+        name: SetCounters(Counter(kwh, 8, error=error), Counter(hours, 6, 1))
+        for name, kwh, hours, error in (
+            ("AE1", 9_412_310, 24_618.2, 0.001),
+            ("AE2", 9_876_145, 25_730.9, -0.002),
+            ("AE3", 8_903_777, 23_402.4, 0.0015),
+        )
+    }
+
+
+def set_meters() -> dict[str, Counter]:
+    """The common fuel meters of the sets as they stand at the beginning."""
+    return {"AE_in": Counter(20_815_402, 8, error=0.0004), "AE_out": Counter(15_230_776, 8)}
+
+
 @dataclass(frozen=True, slots=True)
 class Reader:
     """Who reads, and how coarsely: one of the engineers takes exhaust thermometers to 5 degC."""

@@ -10,7 +10,7 @@ from demo_vessel.faults import FAULTS, GENERAL_WEAR_PER_YEAR
 from demo_vessel.fuel import LOTS
 from demo_vessel.generate import generate
 from demo_vessel.records import History
-from demo_vessel.rounds import TORSION_ERROR, MainEngineCounters
+from demo_vessel.rounds import TORSION_ERROR, MainEngineCounters, set_counters, set_meters
 
 FILE = Path(__file__).parent / "truth.json"
 
@@ -40,11 +40,14 @@ def truth_of(history: History) -> dict[str, Any]:
             for fault in FAULTS
         ],
         "general_wear_of_main_engine_per_year": GENERAL_WEAR_PER_YEAR,
-        "constant_errors": {
+        "constant_relative_errors": {
             "torsion_meter": TORSION_ERROR,
-            "fuel_meter_supply.ME_in": round(counters.supply_l.error, 6),
-            "fuel_meter_return.ME_out": round(counters.return_l.error, 6),
-        },
+            "fuel_meter_supply.ME_in": counters.supply_l.error,
+            "fuel_meter_return.ME_out": counters.return_l.error,
+            "fuel_meter_supply.AE_in": set_meters()["AE_in"].error,
+            "fuel_meter_return.AE_out": set_meters()["AE_out"].error,
+        }
+        | {f"generator_energy {name}": counter.energy_kwh.error for name, counter in set_counters().items()},
         "lots": {lot.id: {"true_lower_calorific_value_mj_kg": lot.true_lcv_mj_kg} for lot in LOTS},
         "months": [
             {
