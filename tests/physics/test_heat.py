@@ -7,6 +7,7 @@ import numpy as np
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
+from scipy.integrate import simpson
 
 from logbook.physics import exergy, exhaust, gas, heat, turbocharger
 
@@ -98,16 +99,14 @@ def test_exergy_with_constant_heat_capacity() -> None:
     assert exergy.constant_cp_exergy(1080, 573.15, 303.15) / 1e3 == pytest.approx(83.071, abs=1e-3)
 
 
-@given(st.floats(300, 900), st.floats(1.0, 6.0), st.floats(260, 320))
+@given(st.floats(330, 900), st.floats(1.0, 6.0), st.floats(260, 320))
 def test_exergy_is_what_a_row_of_carnot_engines_would_take(t: float, lam: float, t0: float) -> None:
     """Integral of (1 - T0/T) dh, by Simpson's rule over our own heat capacity; between 0 and the heat."""
-    from scipy.integrate import simpson
-
     h, e = exergy.exhaust_exergy(t, lam, 1.85, t0)
     temperatures = np.linspace(t0, t, 201)
     cp = gas.product_state(temperatures, lam, 1.85).cp
     assert e == pytest.approx(simpson(cp * (1 - t0 / temperatures), x=temperatures), rel=1e-6, abs=0.01)
-    assert 0 <= e <= abs(h)
+    assert 0 < e < h
 
 
 @pytest.mark.parametrize(("c", "h", "s", "ratio"), [(0.862, 0.136, 0.0017, 1.06765), (0.866, 0.107, 0.025, 1.06612)])
