@@ -2,12 +2,11 @@
 
 from __future__ import annotations
 
-import difflib
 from collections.abc import Mapping
 
 from logbook.plant.catalogue import ReadingDefinition
-from logbook.plant.fields import Table
-from logbook.plant.parts import read_counter, read_efficiency, reading_keys, rising, short_id
+from logbook.plant.fields import Table, nearest, shown
+from logbook.plant.parts import at_full_load, read_counter, read_efficiency, reading_keys, rising, short_id
 from logbook.plant.records import (
     BLOWER_STATES,
     COMBUSTION_TEMPERATURE_METHODS,
@@ -18,6 +17,7 @@ from logbook.plant.records import (
     USES,
     Correction,
     Counter,
+    EfficiencyCurve,
     Engine,
     ShaftGenerator,
     TrialCurve,
@@ -33,6 +33,7 @@ ISO_KINDS = (
     "spark petrol, naturally aspirated",
 )
 """The words of the table of ISO 3046-1 as this program keys it; physics has their exponents."""
+EXHAUST_AT = ("after turbine", "before turbine", "after cylinder")
 
 # Columns of a trial table beside load -> what is possible at all.
 _TRIAL_COLUMNS: Mapping[str, tuple[float, float]] = {
@@ -52,6 +53,14 @@ _TRIAL_COLUMNS: Mapping[str, tuple[float, float]] = {
     "cooler_air_pressure_drop_mbar": (0, 300),
     "cooler_approach_k": (-5, 80),
 }
+# Points of this `per` are read elsewhere than in the round of an engine.
+_READ_ELSEWHERE: Mapping[str, str] = {
+    "meter": "no meter here: each [[meter]] is read with the engines that it serves",
+    "plant": "points of an engine; what is read once for the whole plant stands in the readings of [plant]",
+    "ship": "points of an engine; what is read once for the whole ship stands in the readings of [plant]",
+    "tank": "points of an engine; tanks are sounded by themselves",
+    "lot": "points of an engine; the analysis of a fuel is entered with its lot",
+}
 
 
 def read_engine(table: Table, points: Mapping[str, ReadingDefinition]) -> Engine:
@@ -60,95 +69,119 @@ def read_engine(table: Table, points: Mapping[str, ReadingDefinition]) -> Engine
     if engine_id == "plant":
         table.note("id", "another name: `plant` stands for the whole plant in the book")
     use = table.word("use", USES, "propulsion", required=True)
-    cycle = table.word("cycle", CYCLES, "two-stroke", required=True)
-    fuel = table.word("fuel", FUELS_BURNT, "liquid")
-    efficiency = read_efficiency(table, "generator_efficiency")
-    electrical = table.number("rated_electrical_kw", None, least=1, greatest=1e5, unit="kW")
-    power = table.number("rated_power_kw", None, least=1, greatest=1.2e5, unit="kW")
-    if power is None and not table.has("rated_power_kw"):
-        if electrical is None or efficiency is None:
-            expected = "rated_power_kw (brake), or for a set rated_electrical_kw with generator_efficiency"
-            table.faults.note((*table.path, "rated_power_kw"), "nothing", expected)
-        else:
-            power = electrical / efficiency.efficiency[-1]
-    if use == "generating" and efficiency is None and not table.has("generator_efficiency"):
-        table.faults.note(
-            (*table.path, "generator_efficiency"),
-            "nothing",
-            "the generator's efficiency, e.g. 0.955, or a table over load",
-        )
+    electrical = table.number("rated_electrical_kw", least=1, greatest=1e5, unit="kW")
+    efficiency = read_efficiency(table, "generator_efficiency", "0.955", required=use == "generating")
+    power = _rated_power(table, electrical, efficiency)
     modes = table.texts("operating_modes") or ("standard",)
-    blowers = table.flag("auxiliary_blowers")
-    on_below = table.number("blowers_on_below_percent", None, least=0, greatest=100, unit="% load")
-    off_above = table.number("blowers_off_above_percent", None, least=0, greatest=100, unit="% load")
-    if on_below is not None and off_above is not None and on_below > off_above:
-        table.note("blowers_on_below_percent", "not above blowers_off_above_percent")
-    compression = table.number("compression_ratio", None, least=5, greatest=30)
-    expansion = table.number("expansion_ratio", None, least=5, greatest=40)
-    if compression is not None and expansion is not None and expansion < compression:
-        table.note("expansion_ratio", f"not below compression_ratio ({compression:g})")
-    engine = Engine(
+    on_below, off_above = _blower_band(table)
+    compression, expansion = _ratios(table)
+    turbochargers = table.whole("turbochargers", 1, least=0, greatest=6)
+    # An engine usually has as many charge air coolers as turbochargers.
+    coolers = table.whole("coolers", turbochargers, least=0, greatest=6)
+    bearings = table.whole("bearings", 0, least=0, greatest=40)
+    fixed_pitch, by_cube = _propeller(table)
+    return Engine(
         id=engine_id,
         name=table.text("name", engine_id),
-        cycle=cycle,
-        fuel=fuel,
+        cycle=table.word("cycle", CYCLES, "two-stroke", required=True),
+        fuel=table.word("fuel", FUELS_BURNT, "liquid"),
         use=use,
-        cylinders=table.whole("cylinders", 1, least=1, greatest=24, required=True) or 1,
+        cylinders=table.whole("cylinders", 1, least=1, greatest=24, required=True),
         bore_mm=table.must("bore_mm", least=40, greatest=1200, unit="mm"),
         stroke_mm=table.must("stroke_mm", least=40, greatest=4000, unit="mm"),
-        rated_power_kw=power if power is not None else float("nan"),
+        rated_power_kw=power,
         rated_speed_rpm=table.must("rated_speed_rpm", least=30, greatest=3000, unit="rpm"),
-        turbochargers=table.whole("turbochargers", 1, least=0, greatest=6) or 0,
-        coolers=_coolers(table),
-        bearings=table.whole("bearings", 0, least=0, greatest=40) or 0,
+        turbochargers=turbochargers,
+        coolers=coolers,
+        bearings=bearings,
         rated_electrical_kw=electrical,
         generator_efficiency=efficiency,
         shaft_generator=_shaft_generator(table.table("shaft_generator")),
         compression_ratio=compression,
         expansion_ratio=expansion,
-        stroke_part_at_closing=table.number("stroke_part_at_closing", None, least=0.3, greatest=1.1),
-        trapping_rise_k=table.number("trapping_rise_k", None, least=0, greatest=150, unit="K"),
-        charge_purity=table.number("charge_purity", 1.0, least=0.5, greatest=1) or 1.0,
+        stroke_part_at_closing=table.number("stroke_part_at_closing", least=0.3, greatest=1.1),
+        trapping_rise_k=table.number("trapping_rise_k", least=0, greatest=150, unit="K"),
+        charge_purity=table.number("charge_purity", 1.0, least=0.5, greatest=1),
         combustion_temperature=table.word("combustion_temperature", COMBUSTION_TEMPERATURE_METHODS) or None,
         set_combustion_temperature_k=table.number(
             "set_combustion_temperature_k", 1850.0, least=1000, greatest=3000, unit="K"
-        )
-        or 1850.0,
-        exhaust_at=table.word(
-            "exhaust_at", ("after turbine", "before turbine", "after cylinder", "stack"), "after turbine"
         ),
+        exhaust_at=table.word("exhaust_at", EXHAUST_AT, "after turbine"),
         operating_modes=modes,
-        propeller_pitch_m=table.number("propeller_pitch_m", None, least=0.2, greatest=20, unit="m"),
-        fixed_pitch=table.flag("fixed_pitch"),
-        mean_speed_cube=table.flag("mean_speed_cube"),
-        auxiliary_blowers=blowers,
+        propeller_pitch_m=table.number("propeller_pitch_m", least=0.2, greatest=20, unit="m"),
+        fixed_pitch=fixed_pitch,
+        mean_speed_cube=by_cube,
+        auxiliary_blowers=table.flag("auxiliary_blowers"),
         blowers_on_below_percent=on_below,
         blowers_off_above_percent=off_above,
-        reference_load_percent=table.number("reference_load_percent", None, least=10, greatest=110, unit="%"),
+        reference_load_percent=table.number("reference_load_percent", least=10, greatest=110, unit="%"),
         correction=_correction(table.table("correction")),
-        trials=tuple(_trial(inner, index, modes, blowers) for index, inner in enumerate(table.tables("trial"))),
+        trials=_trials(table, modes),
         counters=_counters(table.table("counters"), points),
-        readings=reading_keys(table, points),
+        readings=_readings(table, points, use, {"bearing": bearings, "turbocharger": turbochargers, "cooler": coolers}),
     )
-    table.done()
-    return engine
 
 
-def _coolers(table: Table) -> int:
-    # An engine usually has as many charge air coolers as turbochargers.
-    default = table.content.get("turbochargers", 1)
-    found = table.whole("coolers", None, least=0, greatest=6)
-    return found if found is not None else (default if isinstance(default, int) else 1)
+def _rated_power(table: Table, electrical: float | None, efficiency: EfficiencyCurve | None) -> float:
+    """Brake power, given or from the electrical rating of a set; NaN (and a fault) where neither is to be had."""
+    power = table.number("rated_power_kw", least=1, greatest=1.2e5, unit="kW")
+    if power is not None:
+        if electrical is not None and power <= electrical:
+            table.note("rated_power_kw", f"brake power, above rated_electrical_kw ({electrical:g}); or leave it out")
+        return power
+    if electrical is not None and efficiency is not None:
+        return electrical / at_full_load(efficiency)
+    if not any(table.has(key) for key in ("rated_power_kw", "rated_electrical_kw")):
+        table.missing("rated_power_kw", "the rated brake power [kW], or of a generating set rated_electrical_kw")
+    elif not table.has("rated_power_kw") and not table.has("generator_efficiency"):
+        table.missing("generator_efficiency", "the efficiency that leads from rated_electrical_kw to brake power")
+    return float("nan")
+
+
+def _blower_band(table: Table) -> tuple[float | None, float | None]:
+    on_below = table.number("blowers_on_below_percent", least=0, greatest=100, unit="% load")
+    off_above = table.number("blowers_off_above_percent", least=0, greatest=100, unit="% load")
+    if on_below is not None and off_above is not None and on_below > off_above:
+        table.note("blowers_on_below_percent", f"not above blowers_off_above_percent ({off_above:g})")
+    for key in ("blowers_on_below_percent", "blowers_off_above_percent"):
+        if table.has(key) and table.content.get("auxiliary_blowers") is not True:
+            table.note(key, "auxiliary_blowers = true beside it; or leave it out")
+    return on_below, off_above
+
+
+def _ratios(table: Table) -> tuple[float | None, float | None]:
+    compression = table.number("compression_ratio", least=5, greatest=30)
+    expansion = table.number("expansion_ratio", least=5, greatest=40)
+    if expansion is not None and not table.has("compression_ratio"):
+        table.note("expansion_ratio", "compression_ratio beside it")
+    if compression is not None and expansion is not None and expansion < compression:
+        table.note("expansion_ratio", f"not below compression_ratio ({compression:g})")
+    return compression, expansion
+
+
+def _propeller(table: Table) -> tuple[bool, bool]:
+    """Whether the pitch is fixed, and whether power may be taken from the cube of the mean speed."""
+    fixed_pitch, by_cube = table.flag("fixed_pitch"), table.flag("mean_speed_cube")
+    if by_cube and not fixed_pitch:
+        table.note("mean_speed_cube", "fixed_pitch = true beside it: a controllable-pitch shaft has no cube law")
+    return fixed_pitch, by_cube
+
+
+def _readings(
+    table: Table, points: Mapping[str, ReadingDefinition], use: str, fitted: Mapping[str, int]
+) -> tuple[str, ...]:
+    where = dict(_READ_ELSEWHERE)
+    if use != "generating":
+        where["generator"] = 'points of this engine; only a set (use = "generating") has a generator'
+    where |= {per: f"{per}s = ... beside it: this engine has none" for per, count in fitted.items() if not count}
+    return reading_keys(table, points, where)
 
 
 def _shaft_generator(table: Table | None) -> ShaftGenerator | None:
     if table is None:
         return None
     rated = table.must("rated_power_kw", least=1, greatest=20000, unit="kW")
-    efficiency = read_efficiency(table, "efficiency")
-    if efficiency is None and not table.has("efficiency"):
-        table.faults.note((*table.path, "efficiency"), "nothing", "its efficiency, e.g. 0.93, or a table over load")
-    table.done()
+    efficiency = read_efficiency(table, "efficiency", "0.93", required=True)
     return ShaftGenerator(rated, efficiency) if efficiency is not None else None
 
 
@@ -157,64 +190,72 @@ def _correction(table: Table | None) -> Correction:
         return Correction()
     rule = table.word("rule", CORRECTION_RULES, "none", required=True)
     percents = {
-        key: table.number(key, 0.0, least=-10, greatest=10, unit="%") or 0.0
+        key: table.number(key, 0.0, least=-10, greatest=10, unit="%")
         for key in ("percent_per_10k_coolant", "percent_per_10k_suction_air", "percent_per_10mbar_barometer")
     }
     correction = Correction(
         rule=rule,
         engine_kind=table.word("engine_kind", ISO_KINDS, required=rule == "ISO 3046"),
-        mechanical_efficiency=table.number("mechanical_efficiency", 0.80, least=0.5, greatest=1) or 0.80,
+        mechanical_efficiency=table.number("mechanical_efficiency", 0.80, least=0.5, greatest=1),
         curve_at=table.word("curve_at", CURVE_AT, "equal brake power"),
         source=table.text("source", "typical, not your maker's"),
         **percents,
     )
     if rule == "two-stroke percentages" and not any(table.has(key) for key in percents):
         table.note("rule", "the percentages of the maker's guide beside this rule: percent_per_10k_coolant ...")
-    table.done()
     return correction
+
+
+def _trials(table: Table, modes: tuple[str, ...]) -> tuple[TrialCurve, ...]:
+    blowers = table.content.get("auxiliary_blowers") is True
+    trials: list[TrialCurve] = []
+    for index, inner in enumerate(table.tables("trial")):
+        trial = _trial(inner, index, modes, blowers)
+        if any(trial.name == other.name for other in trials):
+            inner.faults.note((*inner.path, "name"), f"{shown(trial.name)} a second time", "a name of its own")
+        trials.append(trial)
+    return tuple(trials)
 
 
 def _trial(table: Table, index: int, modes: tuple[str, ...], blowers: bool) -> TrialCurve:
     mode = table.word("operating_mode", modes, modes[0])
-    state = table.word("blowers", BLOWER_STATES, required=blowers) if blowers else None
-    if not blowers and table.has("blowers"):
-        table.note("blowers", "no such key: this engine has no auxiliary_blowers = true")
-        table.asked.add("blowers")
+    state = table.word("blowers", BLOWER_STATES, required=blowers)
+    if not blowers and state:
+        table.note("blowers", "no such key, or auxiliary_blowers = true of this engine")
     load = table.numbers("load_percent", least=1, greatest=130, required=True)
     rising(table, "load_percent", load)
     columns = {
         key: table.numbers(key, least=least, greatest=greatest) for key, (least, greatest) in _TRIAL_COLUMNS.items()
     }
     for key, values in columns.items():
-        if values and len(values) != len(load):
+        if values and load and len(values) != len(load):
             table.note(key, f"as many numbers as load_percent has ({len(load)}, not {len(values)})")
-    if not columns["sfoc_g_kwh"] and not columns["heat_rate_kj_kwh"]:
-        table.faults.note((*table.path, "sfoc_g_kwh"), "nothing", "sfoc_g_kwh, or heat_rate_kj_kwh of a gas engine")
-    lcv = table.number("lower_calorific_value_mj_kg", 42.7, least=5, greatest=130, unit="MJ/kg") or 42.7
-    curve = TrialCurve(
+    if not table.has("sfoc_g_kwh") and not table.has("heat_rate_kj_kwh"):
+        table.missing("sfoc_g_kwh", "sfoc_g_kwh, or heat_rate_kj_kwh of a gas engine")
+    return TrialCurve(
         name=table.text("name", f"trial {index + 1}"),
         operating_mode=mode,
-        blowers=state or None,
-        lower_calorific_value_mj_kg=lcv,
+        blowers=state if blowers else None,
+        lower_calorific_value_mj_kg=table.number(
+            "lower_calorific_value_mj_kg", 42.7, least=5, greatest=130, unit="MJ/kg"
+        ),
         load_percent=load,
         **columns,
     )
-    table.done()
-    return curve
 
 
 def _counters(table: Table | None, points: Mapping[str, ReadingDefinition]) -> dict[str, Counter]:
     if table is None:
         return {}
     counters = {}
-    allowed = [key for key, point in points.items() if point.kind == "counter"]
+    allowed = [key for key, point in points.items() if point.kind == "counter" and point.per not in _READ_ELSEWHERE]
     for key in table.content:
-        inner = table.table(key)
+        table.asked.add(key)
         if key not in allowed:
-            near = difflib.get_close_matches(key, allowed, n=1)
-            expected = "a counter of the catalogue, e.g. revolution_counter = { digits = 8 }"
-            table.note(key, expected, f"Did you mean '{near[0]}'?" if near else "")
-        elif inner is not None:
+            expected = "a counter of the engine, e.g. revolution_counter = { digits = 8 }"
+            table.faults.note((*table.path, key), f"the key {shown(key)}", expected, nearest(key, allowed))
+            continue
+        inner = table.table(key)
+        if inner is not None:
             counters[key] = read_counter(inner)
-            inner.done()
     return counters
