@@ -11,7 +11,8 @@ from typing import TextIO
 from demo_vessel.generate import generate
 from demo_vessel.writing import write
 from logbook.book.book import Book, BookUnusable
-from logbook.plant.description import FILE_NAME, PlantUnusable, read_plant
+from logbook.plant.description import PlantUnusable, read_plant
+from logbook.plant.fields import FILE_NAME
 
 HERE = Path(__file__).parent
 CANNOT_USE_FOLDER, INTERRUPTED = 3, 130

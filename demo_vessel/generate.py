@@ -128,13 +128,12 @@ class _Generator:
     def run(self, progress: Callable[[float], None]) -> History:
         marks = {mark.minute: mark.event for mark in self.ship.marks if mark.minute <= MINUTES}
         watches = set(self.watch_ends)
-        exchanged = {change.minute for change in self.changes[1:]} | {papers.METER_EXCHANGE}
-        borders = {0, MINUTES} | watches | set(marks) | exchanged | set(self.switchboard.changes)
+        cut_in = {change.minute for change in self.changes[1:]}
+        borders = {0, MINUTES, papers.METER_EXCHANGE} | watches | set(marks) | cut_in | set(self.switchboard.changes)
         borders |= {phase.begin for phase in self.ship.phases} | papers.month_begins()
         ordered = sorted(border for border in borders if 0 <= border <= MINUTES)
         self._phase_begins = [phase.begin for phase in self.ship.phases]
-        read_at = watches | {minute for minute, event in marks.items() if event in papers.VOYAGE_EVENTS} | exchanged
-        operation = None
+        read_at = watches | {minute for minute, event in marks.items() if event in papers.VOYAGE_EVENTS} | cut_in
         for begin, end in pairwise(ordered):
             if begin == papers.METER_EXCHANGE:
                 self._exchange_meter(begin)

@@ -15,7 +15,8 @@ from demo_vessel.voyage import Kind, Voyage
 
 CHIEF, SECOND, THIRD, FOURTH = "A. Marlow", "B. Tennant", "C. Idris", "D. Ferro"
 VOYAGE_EVENTS = ("SBE", "COSP", "EOSP", "FWE")
-METER_EXCHANGE = minute_of("2025-10-22 08:00")
+METER_EXCHANGE = minute_of("2025-10-22 06:30")
+"""between two readings: its own entry has the closing and the opening reading"""
 HEAVY_WEATHER_BEAUFORT = 7.0
 
 Draft = tuple[str, str, int, dict[str, Any]]
@@ -98,13 +99,14 @@ def _burnt_t(consumption: Consumption, lot: str, until: int = MINUTES) -> float:
 
 
 _LEFT_OVER_T = {"R01": 420.0, "D01": 60.0, "D02": 55.0}
-_LAST_LOT_T = 1650.0
+"""stays on board for good"""
+_STILL_IN_USE_T = {"R18": 1650.0}
 
 
 def quantity_t(consumption: Consumption, lot: str) -> float:
     """What was delivered of a lot: what is burnt of it, what stays on board, and to the next 5 t."""
-    if lot == LOTS[-3].id:
-        return _LAST_LOT_T
+    if lot in _STILL_IN_USE_T:
+        return _STILL_IN_USE_T[lot]
     return round((_burnt_t(consumption, lot) + _LEFT_OVER_T.get(lot, 2.0)) / 5.0 + 0.5) * 5.0
 
 

@@ -246,11 +246,9 @@ def _steam(
     call = ITINERARY[index]
     working_up = 120 if call.load > 0.35 else 60
     sea_begin = now + working_up
-    if ship.phases[-1].kind is Kind.MANOEUVRING and ship.phases[-1].end - ship.phases[-1].begin > 12 * 60:
-        # Out of the canal the position goes on from its far end.
-        ship.note(now, part[0][0], part[0][1], ship.at(now)[2])
     ship.phases.append(Phase(Kind.WORKING_UP, now, sea_begin, index, 0.72 * call.load))
     run_nm = ship.at(now)[2]
+    # Out of a canal the position goes on from its far end.
     ship.note(now, part[0][0], part[0][1], run_nm)
     for start, end in pairwise(part):
         length, done = distance_nm(start, end), 0.0

@@ -348,9 +348,10 @@ def test_a_counter_passes_zero_and_a_meter_is_exchanged(history: History, main_e
     supply = [number(reading, "fuel_meter_supply.ME_in") for reading in main_engine]
     assert any(before > 9.9e7 and after < 1e6 for before, after in pairwise(supply))
     (exchange,) = (n for n in history.notes("event") if "closing" in n.body)
-    before = [r for r in main_engine if r.taken_utc <= exchange.taken_utc][-1]
+    before = [r for r in main_engine if r.taken_utc < exchange.taken_utc][-1]
     after = next(r for r in main_engine if r.taken_utc > exchange.taken_utc)
     key = exchange.body["instrument"]
+    assert exchange.taken_utc not in [reading.taken_utc for reading in main_engine]
     assert number(before, key) == exchange.body["closing"]
     assert number(after, key) == exchange.body["opening"]
 
