@@ -14,19 +14,26 @@ TWO_STROKE = (
 )  # fmt: skip
 
 FOUR_STROKE = (
-    "engine_state", "generator_power", "power_factor", "engine_speed", "cylinder_exhaust_temperature",
-    "charge_air_pressure", "charge_air_temperature", "cooler_water_inlet_temperature", "turbocharger_speed",
-    "turbine_inlet_temperature", "turbine_outlet_temperature", "engine_fuel_index", "fuel_inlet_pressure",
+    "engine_state", "engine_speed", "cylinder_exhaust_temperature", "cylinder_maximum_pressure",
+    "compressor_inlet_temperature", "charge_air_pressure", "charge_air_temperature",
+    "cooler_water_inlet_temperature", "turbocharger_speed", "turbine_inlet_temperature",
+    "turbine_outlet_temperature", "engine_fuel_index", "fuel_inlet_pressure", "fuel_inlet_temperature",
     "lube_oil_inlet_pressure", "lube_oil_inlet_temperature", "lube_oil_filter_pressure_drop",
-    "jacket_water_outlet_temperature", "generator_energy", "engine_running_hours",
+    "jacket_water_inlet_temperature", "jacket_water_outlet_temperature", "crankcase_pressure",
+    "generator_power", "power_factor", "generator_energy", "engine_running_hours",
 )  # fmt: skip
 
 GAS = (
-    "engine_state", "generator_power", "power_factor", "engine_speed", "ignition_timing",
-    "cylinder_exhaust_temperature", "charge_air_pressure", "charge_air_temperature", "turbocharger_speed",
+    "engine_state", "engine_speed", "ignition_timing", "cylinder_exhaust_temperature",
+    "compressor_inlet_temperature", "charge_air_pressure", "charge_air_temperature",
+    "cooler_water_inlet_temperature", "turbocharger_speed", "turbine_inlet_temperature",
     "turbine_outlet_temperature", "gas_inlet_pressure", "lube_oil_inlet_pressure", "lube_oil_inlet_temperature",
-    "jacket_water_outlet_temperature", "generator_energy", "engine_running_hours", "start_count",
+    "lube_oil_filter_pressure_drop", "jacket_water_inlet_temperature", "jacket_water_outlet_temperature",
+    "crankcase_pressure", "generator_power", "power_factor", "generator_energy", "engine_running_hours",
+    "start_count",
 )  # fmt: skip
+
+_OF_TWO_STROKES_ONLY = ("cylinder_piston", "auxiliary_blower", "cylinder_oil", "thrust")
 
 SHIP = (
     "sea_water_temperature", "low_temperature_water_temperature", "barometric_pressure", "outside_air_temperature",
@@ -37,10 +44,15 @@ STATION = ("outside_air_temperature", "relative_humidity", "barometric_pressure"
 def engine_readings(cycle: str, fuel: str, use: str) -> tuple[str, ...]:
     """The usual points of one engine."""
     if cycle == "two-stroke":
-        return TWO_STROKE
-    if use == "propulsion":
-        return tuple(key for key in TWO_STROKE if not key.startswith(("cylinder_piston", "auxiliary_blower")))
-    return GAS if fuel == "gas" else FOUR_STROKE
+        usual: tuple[str, ...] = TWO_STROKE
+    elif use == "propulsion":
+        usual = tuple(key for key in TWO_STROKE if not key.startswith(_OF_TWO_STROKES_ONLY))
+    else:
+        usual = GAS if fuel == "gas" else FOUR_STROKE
+    if fuel == "both":
+        place = usual.index("fuel_inlet_pressure")
+        usual = (*usual[:place], "gas_inlet_pressure", *usual[place:])
+    return usual
 
 
 def plant_readings(kind: str) -> tuple[str, ...]:
