@@ -227,6 +227,28 @@ def plant_value(engine: Table, plant: Table, key: str, within_h: float) -> Plant
     return PlantValue(values, nearby, entry)
 
 
+@dataclass(frozen=True, slots=True)
+class SharedColumn:
+    """A point that may stand in the engine's own reading or in another of the same round."""
+
+    values: Floats
+    entry: Integers
+    """entry each value stands in; 0 where it is missing"""
+
+
+def shared_column(engine: Table, others: Sequence[Table], key: str) -> SharedColumn:
+    """Own value of the engine's reading, else that of another subject in the same round; never of another round."""
+    values = engine.column(key).copy()
+    entry = np.where(np.isfinite(values), engine.number, 0)
+    for other in others:
+        if key not in other.columns or not len(other):
+            continue
+        column, row = other.columns[key], same_round(engine, other)
+        found = (row >= 0) & np.isfinite(column[row]) & ~np.isfinite(values)
+        values[found], entry[found] = column[row[found]], other.number[row[found]]
+    return SharedColumn(values, entry)
+
+
 def same_round(engine: Table, other: Table) -> Integers:
     """For every row of `engine`, the row of `other` in the same round or at the same instant; -1 for none."""
     row = np.array([other.rounds.get(entry.round, -1) for entry in engine.entries], np.int64)
