@@ -14,6 +14,7 @@ import numpy as np
 from logbook.judgement.events import WRONG, Event
 from logbook.judgement.table import Bools, Floats, Integers
 from logbook.plant.records import Counter
+from logbook.reading.counters import Exchange, difference
 
 CEILING = 1.1
 """A difference may be so many times what the rated rate allows in the elapsed time."""
@@ -105,17 +106,29 @@ def _answer(events: Sequence[Event], instrument: str, entry: int) -> Event | Non
 def _by_rule(
     old: float, new: float, ceiling: float, counter: Counter, exchanges: list[Event], answer: Event | None
 ) -> tuple[float, bool, bool]:
-    total = 0.0
-    for exchange in exchanges:
-        total += float(exchange.body["closing"]) - old
-        old = float(exchange.body["opening"])
-    step = new - old
-    if answer is not None and answer.body["answer"] == "passed zero":
-        return total + step + float(answer.body.get("times", 1)) * counter.modulus, False, True
-    if answer is not None and answer.body["answer"] == "reset":
-        return np.nan, False, False
-    if 0 <= step and total + step <= ceiling:
-        return total + step, False, False
-    if step < 0 and old >= 0.9 * counter.modulus and total + step + counter.modulus <= ceiling:
-        return total + step + counter.modulus, False, True
-    return np.nan, True, False
+    found = difference(
+        old,
+        new,
+        counter,
+        ceiling=ceiling,
+        exchanges=[Exchange(float(e.body["closing"]), float(e.body["opening"]), _new(counter, e)) for e in exchanges],
+        answer=str(answer.body["answer"]) if answer is not None else "",
+        times=int(answer.body.get("times", 1)) if answer is not None else 1,
+    )
+    return (
+        np.nan if found.used is None else found.used,
+        bool(found.question),
+        "passed_zero" in found.marks,
+    )
+
+
+def _new(old: Counter, exchange: Event) -> Counter | None:
+    """How the new counter counts, where the exchange says so."""
+    body = exchange.body
+    if not {"digits", "multiplier", "decimals"} & set(body):
+        return None
+    return Counter(
+        digits=int(body.get("digits", old.digits)),
+        multiplier=float(body.get("multiplier", old.multiplier)),
+        decimals=int(body.get("decimals", old.decimals)),
+    )
