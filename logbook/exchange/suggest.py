@@ -73,7 +73,11 @@ def _apart(head: str) -> _Head:
     if len(unit) == 1 and tokens[-1] != unit:
         unit = ""
     place = next((token for token in tokens if token.isdigit()), "")
-    words = [token for token in tokens if token not in (unit, place)]
+    words = [*tokens]
+    for part in (unit, place):
+        if part:
+            # The last one of that look: in `T/C in C` the first c is a charger's.
+            del words[len(words) - 1 - words[::-1].index(part)]
     return _Head(" ".join(words), whole, unit, place)
 
 
