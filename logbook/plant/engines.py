@@ -70,10 +70,11 @@ def read_engine(table: Table, points: Mapping[str, ReadingDefinition]) -> Engine
         table.note("id", "another name: `plant` stands for the whole plant in the book")
     use = table.word("use", USES, "propulsion", required=True)
     electrical = table.number("rated_electrical_kw", least=1, greatest=1e5, unit="kW")
-    efficiency = read_efficiency(table, "generator_efficiency", "0.955", required=use == "generating")
+    with_generator = use == "generating" or electrical is not None
+    efficiency = read_efficiency(table, "generator_efficiency", "0.955", required=with_generator)
     power = _rated_power(table, electrical, efficiency)
     modes = table.texts("operating_modes") or ("standard",)
-    on_below, off_above = _blower_band(table)
+    blowers, on_below, off_above = _blowers(table)
     compression, expansion = _ratios(table)
     turbochargers = table.whole("turbochargers", 1, least=0, greatest=6)
     # An engine usually has as many charge air coolers as turbochargers.
@@ -111,7 +112,7 @@ def read_engine(table: Table, points: Mapping[str, ReadingDefinition]) -> Engine
         propeller_pitch_m=table.number("propeller_pitch_m", least=0.2, greatest=20, unit="m"),
         fixed_pitch=fixed_pitch,
         mean_speed_cube=by_cube,
-        auxiliary_blowers=table.flag("auxiliary_blowers"),
+        auxiliary_blowers=blowers,
         blowers_on_below_percent=on_below,
         blowers_off_above_percent=off_above,
         reference_load_percent=table.number("reference_load_percent", least=10, greatest=110, unit="%"),
@@ -133,20 +134,25 @@ def _rated_power(table: Table, electrical: float | None, efficiency: EfficiencyC
         return electrical / at_full_load(efficiency)
     if not any(table.has(key) for key in ("rated_power_kw", "rated_electrical_kw")):
         table.missing("rated_power_kw", "the rated brake power [kW], or of a generating set rated_electrical_kw")
-    elif not table.has("rated_power_kw") and not table.has("generator_efficiency"):
-        table.missing("generator_efficiency", "the efficiency that leads from rated_electrical_kw to brake power")
     return float("nan")
 
 
-def _blower_band(table: Table) -> tuple[float | None, float | None]:
+def _blowers(table: Table) -> tuple[bool, float | None, float | None]:
+    """Whether auxiliary blowers are fitted, and between which loads they go on and off."""
+    fitted = table.flag("auxiliary_blowers")
     on_below = table.number("blowers_on_below_percent", least=0, greatest=100, unit="% load")
     off_above = table.number("blowers_off_above_percent", least=0, greatest=100, unit="% load")
     if on_below is not None and off_above is not None and on_below > off_above:
         table.note("blowers_on_below_percent", f"not above blowers_off_above_percent ({off_above:g})")
-    for key in ("blowers_on_below_percent", "blowers_off_above_percent"):
-        if table.has(key) and table.content.get("auxiliary_blowers") is not True:
-            table.note(key, "auxiliary_blowers = true beside it; or leave it out")
-    return on_below, off_above
+    band = [key for key in ("blowers_on_below_percent", "blowers_off_above_percent") if table.has(key)]
+    if band and _without_blowers(table):
+        table.note(band[0], "auxiliary_blowers = true beside it; or leave it out")
+    return fitted, on_below, off_above
+
+
+def _without_blowers(table: Table) -> bool:
+    """The engine has none; not so when what the file says of them is a fault of its own."""
+    return table.content.get("auxiliary_blowers", False) is False
 
 
 def _ratios(table: Table) -> tuple[float | None, float | None]:
@@ -207,20 +213,19 @@ def _correction(table: Table | None) -> Correction:
 
 
 def _trials(table: Table, modes: tuple[str, ...]) -> tuple[TrialCurve, ...]:
-    blowers = table.content.get("auxiliary_blowers") is True
     trials: list[TrialCurve] = []
     for index, inner in enumerate(table.tables("trial")):
-        trial = _trial(inner, index, modes, blowers)
+        trial = _trial(inner, index, modes, table)
         if any(trial.name == other.name for other in trials):
             inner.faults.note((*inner.path, "name"), f"{shown(trial.name)} a second time", "a name of its own")
         trials.append(trial)
     return tuple(trials)
 
 
-def _trial(table: Table, index: int, modes: tuple[str, ...], blowers: bool) -> TrialCurve:
+def _trial(table: Table, index: int, modes: tuple[str, ...], engine: Table) -> TrialCurve:
     mode = table.word("operating_mode", modes, modes[0])
-    state = table.word("blowers", BLOWER_STATES, required=blowers)
-    if not blowers and state:
+    state = table.word("blowers", BLOWER_STATES, required=engine.content.get("auxiliary_blowers") is True)
+    if state and _without_blowers(engine):
         table.note("blowers", "no such key, or auxiliary_blowers = true of this engine")
     load = table.numbers("load_percent", least=1, greatest=130, required=True)
     rising(table, "load_percent", load)
@@ -235,7 +240,7 @@ def _trial(table: Table, index: int, modes: tuple[str, ...], blowers: bool) -> T
     return TrialCurve(
         name=table.text("name", f"trial {index + 1}"),
         operating_mode=mode,
-        blowers=state if blowers else None,
+        blowers=state or None,
         lower_calorific_value_mj_kg=table.number(
             "lower_calorific_value_mj_kg", 42.7, least=5, greatest=130, unit="MJ/kg"
         ),

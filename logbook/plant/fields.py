@@ -37,19 +37,24 @@ def dotted(path: Path) -> str:
     text = ""
     for part in path:
         text += f"[{part + 1}]" if isinstance(part, int) else (f".{part}" if text else part)
-    return text or FILE_NAME
+    return printable(text) or FILE_NAME
 
 
 def header(path: Path) -> str:
     """How the table of this path is written: `[plant]`, `[[engine]]`, `[engine.correction]`."""
-    name = ".".join(part for part in path if isinstance(part, str))
+    name = printable(".".join(part for part in path if isinstance(part, str)))
     return f"[[{name}]]" if path and isinstance(path[-1], int) else f"[{name}]"
+
+
+def printable(text: str) -> str:
+    """A text without signs that would not be seen, or would drive the terminal: they are written out."""
+    return "".join(sign if sign.isprintable() else ascii(sign)[1:-1] for sign in text)
 
 
 def shown(value: Any) -> str:
     """A value as it may stand in a sentence, written as TOML writes it."""
     try:
-        text = json.dumps(value, ensure_ascii=False, default=str)
+        text = printable(json.dumps(value, ensure_ascii=False, default=str))
     except ValueError:
         # Python does not print a whole number of thousands of digits.
         text = "a number of thousands of digits"

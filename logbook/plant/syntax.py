@@ -12,7 +12,7 @@ _ADVICE = (
     (r"Cannot overwrite|Duplicate", "This key or table stands there twice: keep one."),
     (r"Cannot declare", "Engines, meters, tanks, fuels and people have a table each, in double brackets: [[engine]]."),
     (r"Expected '=' after a key", 'Write key = value; put a # before what is only a remark.'),
-    (r"Unclosed|at end of document|Expected ']'", "A bracket or quotation mark, there or above, is not closed."),
+    (r"Unclosed|at end of document|Expected '\]+'", "A bracket or quotation mark, there or above, is not closed."),
     (r"Unterminated|Illegal character", "Close the text with a quotation mark on the same line."),
     (r"Unescaped", "A backslash in a text is written twice: \\\\."),
     (r"Exceeds the limit", "No number of this file has thousands of digits."),

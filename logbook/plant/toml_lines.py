@@ -78,7 +78,8 @@ def _table(parts: list[str], in_array: bool, counts: dict[Path, int]) -> Path:
 def line_of(lines: Mapping[Path, int], path: Path) -> int:
     """Line of a key, or of the nearest table around it; 1 when nothing of it stands in the text."""
     while path:
-        if path in lines:
-            return lines[path]
+        for found in (path, (*path, 0)):
+            if found in lines:
+                return lines[found]
         path = path[:-1]
     return 1
