@@ -127,7 +127,7 @@ def _said(book: dict[str, Any] | None) -> Iterator[str]:
     if book is None:
         yield "There is no book yet: the first entry makes it."
     elif not book["usable"]:
-        yield book["sentence"]
+        yield _wrapped(book["sentence"])
     else:
         yield from book["breaks"]
         count = len(book["breaks"])
@@ -136,7 +136,7 @@ def _said(book: dict[str, Any] | None) -> Iterator[str]:
         else:
             yield f"The book is whole: {book['entries']} entries; digest of the last:\n{book['digest']}"
         if book["not_in_plant"]:
-            yield (
+            yield _wrapped(
                 f"The book has readings of {', '.join(book['not_in_plant'])}, which plant.toml does not have: "
                 "an id must stay what it was."
             )
