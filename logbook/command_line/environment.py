@@ -88,6 +88,15 @@ class Environment:
         return self.variables.get("TERM", "")
 
     @property
+    def terminal_size(self) -> tuple[int, int] | None:
+        """Columns and rows; None where standard output is no terminal."""
+        try:
+            size = os.get_terminal_size(self.out.fileno())
+        except (OSError, ValueError):
+            return None
+        return size.columns, size.lines
+
+    @property
     def plain_driver(self) -> bool:
         """LOGBOOK_PLAIN_DRIVER=1 switches off the driver that writes only changed cells."""
         return self.variables.get("LOGBOOK_PLAIN_DRIVER", "") not in ("", "0")

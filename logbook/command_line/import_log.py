@@ -31,7 +31,9 @@ def configure(parser: argparse.ArgumentParser) -> None:
     parser.add_argument("file", metavar="FILE", type=Path, help="CSV or XLSX")
     parser.add_argument("--columns", metavar="MAP", type=Path, help="the column map")
     parser.add_argument("--suggest", action="store_true", help="print a draft of the column map and stop")
-    parser.add_argument("--check", action="store_true", help="name every doubtful cell by row and column; write nothing")
+    parser.add_argument(
+        "--check", action="store_true", help="name every doubtful cell by row and column; write nothing"
+    )
     parser.add_argument("--engine", metavar="ENGINE", help="with --suggest: the engine of the log")
     parser.add_argument("--all-doubts", action="store_true", help=f"name every doubtful cell, not only {SHOWN_DOUBTS}")
     shared.person(parser)
@@ -73,7 +75,9 @@ def run(arguments: argparse.Namespace, environment: Environment) -> ExitCode:
         return ExitCode.DONE
     with opened(arguments.plant, environment, person, write=True) as (_, book):
         kinds = sorted({entry.kind for entry in found.entries})
-        fresh, same, differing = without_known(found.entries, book.entries(kinds=kinds, struck_out=True) if kinds else [])
+        fresh, same, differing = without_known(
+            found.entries, book.entries(kinds=kinds, struck_out=True) if kinds else []
+        )
         for entry in differing[:SHOWN_DOUBTS]:
             environment.say(
                 f"{entry.kind} of {entry.subject} at {entry.taken_utc:%Y-%m-%d %H:%M}Z stands in the book with other"
@@ -113,6 +117,8 @@ def _bar(environment: Environment, what: str, total: int) -> Callable[[int], Non
     def show(done: int) -> None:
         filled = 40 * done // total
         end = "\n" if done >= total else ""
-        print(f"\r{what} [{'#' * filled}{'.' * (40 - filled)}] {done}/{total}", end=end, file=environment.err, flush=True)
+        print(
+            f"\r{what} [{'#' * filled}{'.' * (40 - filled)}] {done}/{total}", end=end, file=environment.err, flush=True
+        )
 
     return show

@@ -23,13 +23,18 @@ def configure(parser: argparse.ArgumentParser) -> None:
 
 def run(arguments: argparse.Namespace, environment: Environment) -> ExitCode:
     from logbook.panes.terminal.check import refusal
+    from logbook.panes.terminal.glyphs import chosen
 
     encoding = getattr(environment.out, "encoding", None) or "ascii"
-    sentence = refusal(
-        environment.term, encoding, sys.stdin.isatty() and environment.out.isatty(), shared.terminal_size(environment)
-    )
+    # The panes are drawn on standard error and typed on standard input.
+    is_terminal = sys.stdin.isatty() and environment.out.isatty() and environment.err.isatty()
+    sentence = refusal(environment.term, encoding, is_terminal, environment.terminal_size)
     if sentence is not None:
         raise Refused(sentence)
+    try:
+        glyphs = chosen(environment.term, encoding, environment.glyphs)
+    except ValueError as error:
+        raise Refused(str(error)) from error
     from logbook.command_line.plant_folder import opened
 
     person = environment.person(arguments.person)
@@ -44,9 +49,7 @@ def run(arguments: argparse.Namespace, environment: Environment) -> ExitCode:
             identity_by=person.identity_by,
             read_only=arguments.read_only,
             first=arguments.pane,
-            term=environment.term,
-            encoding=encoding,
-            glyphs=environment.glyphs,
+            glyphs=glyphs,
             plain_driver=environment.plain_driver,
             now=environment.now,
         )

@@ -150,7 +150,8 @@ def _key_fault(plant: Plant, key: str) -> str:
         near = difflib.get_close_matches(name, plant.points, n=1)
         return f"'{key}' is no reading of this plant.{f' Did you mean {near[0]}?' if near else ''}"
     if plant.points[name].per == "meter" and place not in {meter.id for meter in plant.meters}:
-        return f"'{key}': plant.toml has no meter '{place}'; it has: {', '.join(meter.id for meter in plant.meters) or 'none'}."
+        having = ", ".join(meter.id for meter in plant.meters) or "none"
+        return f"'{key}': plant.toml has no meter '{place}'; it has: {having}."
     return ""
 
 

@@ -333,6 +333,8 @@ def _flag(
     flags.add("above_bound", efficiency > bound)
     flags.add("above_ideal_cycle", efficiency > ideal)
     _marks(flags, table, spans, in_use)
+    # An engine that stood still has nothing to compare, and so no reasons.
+    flags.masks[~ran] = 0
 
 
 def _alone(engine: Engine, table: Table, running: Bools, brake: power.Power, deviation: Floats) -> Bools:

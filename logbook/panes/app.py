@@ -17,6 +17,8 @@ from textual.widgets import ContentSwitcher, Static
 from logbook.book.book import Book
 from logbook.book.drafts import Drafts
 from logbook.panes.pane import Pane
+from logbook.panes.terminal.dropped_line import when_dropped
+from logbook.panes.terminal.glyphs import Glyphs
 from logbook.plant.records import Plant
 
 CAUTION = (
@@ -36,7 +38,7 @@ class Session:
     person: str
     identity_by: str
     read_only: bool
-    ascii_only: bool
+    glyphs: Glyphs
     now: Callable[[], datetime]
 
 
@@ -106,6 +108,7 @@ class LogbookApp(App[None]):
         yield Static(id="keys")
 
     async def on_mount(self) -> None:
+        when_dropped(self.exit)
         await self.show(self.first)
 
     @property

@@ -9,6 +9,7 @@ from pathlib import Path
 from logbook.book.book import Book
 from logbook.book.drafts import Drafts
 from logbook.panes.app import LogbookApp, Session
+from logbook.panes.terminal.glyphs import Glyphs
 from logbook.panes.terminal.settings import run
 from logbook.plant.records import Plant
 
@@ -22,7 +23,7 @@ def show(
     identity_by: str,
     read_only: bool,
     first: str,
-    ascii_only: bool,
+    glyphs: Glyphs,
     plain_driver: bool,
     now: Callable[[], datetime],
 ) -> None:
@@ -35,7 +36,7 @@ def show(
         person=person,
         identity_by=identity_by,
         read_only=read_only,
-        ascii_only=ascii_only,
+        glyphs=glyphs,
         now=now,
     )
     run(LogbookApp(session, first), plain_driver=plain_driver)

@@ -83,7 +83,8 @@ class WatchPane(Pane):
             return
         drafts, unreadable = session.drafts.unfinished(session.person)
         plans = plans_of(session.plant)
-        self._choices = [*drafts, *plans][:9]
+        choices: list[Draft | RoundPlan] = [*drafts, *plans]
+        self._choices = choices[:9]
         lines += unreadable
         if drafts:
             lines.append("Unfinished:")
@@ -306,10 +307,14 @@ class WatchPane(Pane):
     @work(thread=True, exclusive=True, exit_on_error=False, group="answer")
     def _answer(self, draft: Draft, subjects: list[str]) -> None:
         """What the round says, worked out beside the screen: pandas is loaded here for the first time."""
-        from logbook.panes.answering import round_says
+        from logbook.answers.watch import round_says
+        from logbook.panes.answering import answered
 
         try:
-            lines = round_says(self.session.plant, self.session.folder, subjects, draft.taken_utc)
+            lines = answered(
+                self.session.folder,
+                lambda entries: round_says(self.session.plant, entries, subjects, draft.taken_utc),
+            )
         except Exception as error:
             lines = [f"The figures could not be worked out: {error}"]
         self.app.call_from_thread(self._show_answer, draft, lines)

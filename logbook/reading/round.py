@@ -289,3 +289,29 @@ def _runs(subject: str, entered: Mapping[Target, Value]) -> bool:
         return state.word == "running"
     power = entered.get((subject, "generator_power"))
     return power is None or power.state not in (State.STOPPED, State.STAND_BY)
+
+
+def field_for(plant: Plant, subject: str, key: str) -> Field | None:
+    """The field of one key of an engine (or of the plant), in the log or not; None where it has no such place."""
+    name, _, place = key.partition(".")
+    point = plant.points.get(name)
+    if point is None:
+        return None
+    targets: tuple[Target, ...] = ((subject, key),)
+    unit = point.unit
+    if point.per == "meter":
+        meter = next((meter for meter in plant.meters if meter.id == place), None)
+        if meter is None:
+            return None
+        if meter.key == name:
+            point = _meter_point(plant, meter)
+            unit = point.unit
+    elif subject != PLANT and point.per in ("cylinder", "turbocharger", "cooler", "bearing"):
+        places = _places(point, plant.engine(subject))
+        if place and place not in places:
+            return None
+        if not place:
+            targets = tuple((subject, _key(point, one)) for one in places)
+    elif place:
+        return None
+    return Field(f"{subject}/{key}", point.label, unit, point.walk, point, targets)
