@@ -1,0 +1,133 @@
+"""Cumulative sums and one change point, against ruptures and scipy."""
+
+from collections.abc import Callable
+
+import numpy as np
+import pytest
+import ruptures
+from hypothesis import given
+from hypothesis import strategies as st
+from scipy.stats import rankdata
+
+from logbook.physics import detect
+
+TABLE_16_8 = [102.0, 94.8, 98.3, 98.4, 102.0, 98.5, 99.0, 97.7, 100.0, 98.1, 101.3, 98.7, 101.1, 98.4, 97.0, 96.7,
+              100.3, 101.4, 97.2, 101.0]  # fmt: skip
+STEP = [0.4, -0.3, 0.6, 0.1, -0.5, 0.2, 0.7, -0.2, 0.3, -0.1, 0.2, 1.9, 2.6, 1.8, 2.2, 2.9, 1.7, 2.4, 2.1, 2.5]
+
+
+def test_cusum() -> None:
+    """Montgomery & Runger, Applied Statistics and Probability for Engineers, table 16-8."""
+    found = detect.cusum(TABLE_16_8, 99, 1, 10)
+    high = [2.0, 0, 0, 0, 2.0, 0.5, 0, 0, 0, 0, 1.3, 0, 1.1, 0, 0, 0, 0.3, 1.7, 0, 1.0]
+    low = [0, 3.2, 2.9, 2.5, 0, 0, 0, 0.3, 0, 0, 0, 0, 0, 0, 1.0, 2.3, 0, 0, 0.8, 0]
+    assert found.high == pytest.approx(high, abs=1e-9)
+    assert found.low == pytest.approx(low, abs=1e-9)
+    assert found.first_signal is None
+    assert found.since is None
+
+
+@pytest.mark.parametrize("sign", [1, -1])
+def test_cusum_signals_a_step_and_says_since_when(sign: int) -> None:
+    """Signal at the 13th, since the 12th; calculated independently with numpy."""
+    found = detect.cusum(sign * np.array(STEP), sign * 0.127, 0.5 * 0.38, 5 * 0.38)
+    assert found.first_signal == 12
+    assert found.since == 11
+
+
+def test_cusum_that_never_was_zero_began_at_the_first_point() -> None:
+    assert detect.cusum([2, 2, 2], 0, 0.5, 4).since == 0
+
+
+@pytest.mark.parametrize(("points_between_calls", "limit"), [(1825, 6.36), (9125, 7.96), (36_500, 9.35)])
+def test_limit_for_a_rate_of_false_calls(points_between_calls: int, limit: float) -> None:
+    """White noise, K 0.5 s, both sides; calculated independently here by a Markov chain of the upper sum."""
+    from scipy.stats import norm
+
+    states = 200
+    width = 2 * limit / (2 * states - 1)
+    middle = np.arange(states) * width
+    upper = norm.cdf(middle[None, :] + width / 2 - middle[:, None] + 0.5)
+    step = np.diff(upper, axis=1, prepend=0.0)
+    run = np.linalg.solve(np.eye(states) - step, np.ones(states))[0]
+    # Two sides call twice as often as one.
+    assert run / 2 == pytest.approx(points_between_calls, rel=0.03)
+
+
+def test_cusum_calls_as_often_as_the_chain_says() -> None:
+    """K 0.5 s, H 4 s: once in 168 points (both sides), the textbook's example; 40 000 points of white noise."""
+    values, calls, start = np.random.default_rng(3).normal(size=40_000), 0, 0
+    while True:
+        found = detect.cusum(values[start : start + 2000], 0, 0.5, 4)
+        if found.first_signal is None:
+            break
+        calls, start = calls + 1, start + found.first_signal + 1
+    assert values.size / calls == pytest.approx(168, rel=0.2)
+
+
+def test_change_point() -> None:
+    """Calculated independently with ruptures, scipy and numpy."""
+    found = detect.change_point(STEP)
+    assert found.after == 11
+    assert (found.before_mean, found.after_mean) == pytest.approx((0.12727, 2.23333), abs=1e-5)
+    assert (found.total_sum_of_squares, found.sum_of_squares) == pytest.approx((24.6375, 2.68182), abs=1e-5)
+    assert found.k == 99
+    assert found.p == pytest.approx(0.00182, abs=5e-6)
+
+
+def test_since_interval_of_the_change() -> None:
+    """The 11th alone: 10th 6.397 and 12th 5.438 against 3.254; calculated independently with numpy."""
+    found = detect.change_point(STEP)
+    assert found.costs[[9, 11]] == pytest.approx([6.397, 5.438], abs=1e-3)
+    scatter = np.sqrt(found.sum_of_squares / (len(STEP) - 2))
+    assert found.sum_of_squares + 3.84 * scatter**2 == pytest.approx(3.254, abs=1e-3)
+    assert found.since(scatter) == (11, 11)
+    assert found.since(scatter, n_effective_ratio=5) == (11, 12)
+    assert found.since(scatter, n_effective_ratio=7) == (10, 12)
+
+
+@given(st.lists(st.integers(-50, 50), min_size=4, max_size=40))
+def test_change_point_agrees_with_ruptures(values: list[int]) -> None:
+    y = np.array(values, float)
+    found = detect.change_point(y)
+    cost = ruptures.costs.CostL2().fit(y.reshape(-1, 1))
+    splits = [cost.error(0, k) + cost.error(k, y.size) for k in range(1, y.size)]
+    assert found.costs == pytest.approx(splits, abs=1e-6)
+    assert found.sum_of_squares == pytest.approx(min(splits), abs=1e-6)
+
+
+def test_dynamic_programming_of_ruptures_finds_the_same_split() -> None:
+    assert ruptures.Dynp(model="l2", min_size=1, jump=1).fit(np.array(STEP)).predict(n_bkps=1) == [11, 20]
+
+
+@given(st.lists(st.integers(-5, 5), min_size=4, max_size=30))
+def test_pettitt_from_its_definition(values: list[int]) -> None:
+    """K is the largest |sum of signs between the two sides|, and so by ranks; ties share theirs."""
+    y = np.array(values, float)
+    signs = np.sign(y[:, None] - y[None, :])
+    by_signs = max(abs(signs[:k, k:].sum()) for k in range(1, y.size))
+    ranks = rankdata(y)
+    by_ranks = max(abs(2 * ranks[:k].sum() - k * (y.size + 1)) for k in range(1, y.size))
+    found = detect.change_point(y)
+    assert found.k == pytest.approx(by_signs)
+    assert found.k == pytest.approx(by_ranks)
+    assert 0 <= found.p <= 1
+
+
+def test_noise_alone_is_not_accepted_as_a_change() -> None:
+    noise = np.random.default_rng(5).normal(size=(200, 30))
+    accepted = sum(detect.change_point(row).p < 0.05 for row in noise)
+    assert accepted <= 20
+
+
+@pytest.mark.parametrize(
+    ("call", "sentence"),
+    [
+        (lambda: detect.cusum([1, 2], 0, -1, 5), "not below zero"),
+        (lambda: detect.cusum([1, 2], 0, 1, 0), "limit is above zero"),
+        (lambda: detect.change_point([1, 2, 3]), "at least 4 points; 3 were given"),
+    ],
+)
+def test_what_cannot_be_is_refused_with_what_to_do(call: Callable[[], object], sentence: str) -> None:
+    with pytest.raises(ValueError, match=sentence):
+        call()
