@@ -94,7 +94,7 @@ def carbon_intensity(
     unknown = [name for name in fuel_t if name not in REPORTING_FUELS]
     if unknown or not fuel_t:
         raise ValueError(f"Fuel is one of: {', '.join(REPORTING_FUELS)}; found: {', '.join(unknown) or 'none'}.")
-    if capacity <= 0 or distance_nm <= 0 or any(not 0 <= mass < inf for mass in fuel_t.values()):
+    if not (0 < capacity < inf and 0 < distance_nm < inf) or any(not 0 <= mass < inf for mass in fuel_t.values()):
         raise ValueError("Capacity and distance must be above zero, fuel not below zero.")
     line = next(line for line in REFERENCE_LINES[ship_type] if capacity >= line.least)
     co2_t = sum(mass * REPORTING_FUELS[name].carbon_factor for name, mass in fuel_t.items())
