@@ -43,7 +43,11 @@ def torsion_power(
     theta, g, do, length, n, di = floats(
         twist_rad, shear_modulus_pa, outer_diameter_m, length_m, speed_rev_s, inner_diameter_m
     )
-    torque = g * pi * (do**4 - di**4) / 32 * theta / length
+    holds = good(
+        (length > 0) & (do > di), "Measured length must be above zero, and the shaft's bore smaller than its outside.",
+        theta, g, do, length, n, di,
+    )  # fmt: skip
+    torque = g * pi * (do**4 - di**4) / 32 * theta / np.where(holds, length, np.nan)
     return shaped(torque), shaped(2 * pi * n * torque)
 
 
@@ -57,7 +61,8 @@ def brake_power_of_set(electrical_w: ArrayLike, generator_efficiency: ArrayLike)
 def brake_power_with_take_off(shaft_w: ArrayLike, take_off_w: ArrayLike, take_off_efficiency: ArrayLike) -> Any:
     """Brake power [W] of an engine whose take-off sits before the torsion meter; power taken in counts negative."""
     p, pto, eta = floats(shaft_w, take_off_w, take_off_efficiency)
-    return shaped(p + pto / eta)
+    holds = good((eta > 0) & (eta <= 1), "Take-off efficiency lies between 0 and 1.", p, pto, eta)
+    return shaped(p + pto / np.where(holds, eta, np.nan))
 
 
 def mean_pressure(
@@ -65,8 +70,8 @@ def mean_pressure(
 ) -> Any:
     """Mean effective (or indicated) pressure [Pa]: P k/(V_s z n)."""
     p, v, z, n = floats(power_w, swept_volume_m3, cylinders, speed_rev_s)
-    good((n > 0) & (v > 0), "Speed and swept volume must be above zero.", p, v, z, n)
-    return shaped(p * revolutions_per_cycle(cycle) / (v * z * np.where(n > 0, n, np.nan)))
+    holds = good((n > 0) & (v > 0) & (z > 0), "Speed, swept volume and cylinders must be above zero.", p, v, z, n)
+    return shaped(p * revolutions_per_cycle(cycle) / np.where(holds, v * z * n, np.nan))
 
 
 def power_from_mean_pressure(
@@ -100,7 +105,9 @@ def brake_efficiency(consumption_kg_j: ArrayLike, lower_calorific_value_j_kg: Ar
 def efficiency_of_fuels(energy_j: ArrayLike, mass_kg: ArrayLike, lower_calorific_value_j_kg: ArrayLike) -> Any:
     """Efficiency with several fuels at once: E / sum m LCV; fuels on axis 0 of mass and calorific value."""
     e, m, q = floats(energy_j, mass_kg, lower_calorific_value_j_kg)
-    return shaped(e / (m * q).sum(axis=0))
+    burnt = (m * q).sum(axis=0)
+    holds = good(burnt > 0, "No fuel was burnt: there is no efficiency.", e, burnt)
+    return shaped(e / np.where(holds, burnt, np.nan))
 
 
 def propeller_power(power_w: ArrayLike, speed_ratio: ArrayLike) -> Any:
@@ -112,7 +119,8 @@ def propeller_power(power_w: ArrayLike, speed_ratio: ArrayLike) -> Any:
 def running_index(power_ratio: ArrayLike, speed_ratio: ArrayLike) -> Any:
     """(P/P_rated)/(n/n_rated)^3: above 1 heavy, below 1 light running."""
     p, n = floats(power_ratio, speed_ratio)
-    return shaped(p / n**3)
+    holds = good(n > 0, "The speed ratio must be above zero.", p, n)
+    return shaped(p / np.where(holds, n, np.nan) ** 3)
 
 
 def slip(pitch_m: ArrayLike, revolutions: ArrayLike, distance_m: ArrayLike) -> tuple[Any, Any]:

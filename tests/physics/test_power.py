@@ -153,6 +153,12 @@ def test_power_from_index_and_speed() -> None:
         (lambda: power.brake_power_of_set(1980e3, 95.5), "between 0 and 1"),
         (lambda: power.mean_pressure(1e6, 0.1, 6, 0, "two-stroke"), "above zero"),
         (lambda: power.cylinder_constant(0.1, "2-stroke"), "two-stroke or four-stroke"),
+        (lambda: power.mean_pressure(1e6, 0.1, 0, 2, "two-stroke"), "above zero"),
+        (lambda: power.torsion_power(0.001, 82.6e9, 0.58, 0.0, 1.6), "length must be above zero"),
+        (lambda: power.torsion_power(0.001, 82.6e9, 0.58, 2.0, 1.6, 0.58), "bore smaller"),
+        (lambda: power.brake_power_with_take_off(8.2e6, 6.4e5, 0), "between 0 and 1"),
+        (lambda: power.efficiency_of_fuels(1e6, [0.0, 0.0], [48e6, 42.7e6]), "No fuel was burnt"),
+        (lambda: power.running_index(0.8, 0), "speed ratio"),
         (lambda: power.slip(3.8, 0, 1000), "Pitch and revolutions"),
     ],
 )
@@ -166,3 +172,6 @@ def test_an_impossible_element_of_an_array_becomes_nan_and_the_rest_is_worked_ou
     assert found[0] == pytest.approx(1 / KWH)
     assert np.isnan(found[1])
     assert np.isnan(power.mean_pressure(np.array([1e6, 1e6]), 0.1, 6, np.array([1.0, 0.0]), "two-stroke")[1])
+    index = power.running_index(np.array([0.7, 0.7]), np.array([0.9, 0.0]))
+    assert index[0] == pytest.approx(0.7 / 0.729)
+    assert np.isnan(index[1])
