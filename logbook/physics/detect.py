@@ -25,7 +25,7 @@ class Cusum:
 def cusum(values: ArrayLike, target: float, allowance: float, limit: float) -> Cusum:
     """Hi = max(0, Hi + x - mu0 - K), Lo = max(0, Lo + mu0 - K - x); signal above H.
 
-    `target` mu0, `allowance` K and `limit` H in the unit of the values; K and H above zero, else ValueError.
+    `target` mu0, `allowance` K and `limit` H in the unit of the values; K not below zero, H above it, else ValueError.
     """
     (x,) = floats(values)
     if allowance < 0 or limit <= 0:
