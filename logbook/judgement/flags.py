@@ -142,7 +142,7 @@ class Flags:
 
     def add(self, key: str, where: NDArray[np.bool_]) -> None:
         """Set one flag on the rows where `where` is true."""
-        self.masks[where] |= _BITS[key]
+        self.masks[np.asarray(where, bool)] |= _BITS[key]
 
     def merge(self, masks: Mask) -> None:
         self.masks |= masks

@@ -154,7 +154,7 @@ def power_of(
     brake[known], source[known] = spot[known], SWITCHBOARD_SPOT if engine.is_set else TORSION_SPOT
     by_counter = np.isin(source, (SHAFT_COUNTER, GENERATOR_COUNTER))
     by_spot = np.isin(source, (TORSION_SPOT, SWITCHBOARD_SPOT))
-    by_revolutions = (by_spot & ~engine.is_set) | (source == SPEED_CUBE)
+    by_revolutions = (by_spot & (not engine.is_set)) | (source == SPEED_CUBE)
     last_place = _last_place(engine, counter_key)
     return Power(
         brake_kw=brake,

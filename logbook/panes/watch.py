@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import replace
-from datetime import datetime, timedelta
+from datetime import datetime
 from typing import TYPE_CHECKING, ClassVar
 
 from textual import on, work
@@ -18,7 +18,7 @@ from logbook.book.entry import NewEntry, reading_body
 from logbook.panes.form import RoundForm
 from logbook.panes.pane import Pane
 from logbook.reading.entering import Round, Target
-from logbook.reading.round import PLANT, RoundPlan, begin, fields_of, plans_of, understanding
+from logbook.reading.round import PLANT, RoundPlan, begin, fields_of, plans_of, round_length, round_name, understanding
 from logbook.reading.text import printable
 from logbook.reading.value import Value
 
@@ -33,6 +33,8 @@ class WatchPane(Pane):
         Binding("o", "sign_off", "sign off", id="watch.sign_off"),
         Binding("enter", "resume", "on with the round", id="watch.resume"),
         Binding("x", "put_away", "another round", id="watch.put_away"),
+        Binding("left", "shift(-1)", "an earlier round", id="watch.earlier"),
+        Binding("right", "shift(1)", "a later round", id="watch.later"),
         *[Binding(str(digit), f"choose({digit})", show=False) for digit in range(1, 10)],
     ]
     can_focus = True
@@ -43,6 +45,8 @@ class WatchPane(Pane):
         self.draft: Draft | None = None
         self.form: RoundForm | None = None
         self._choices: list[Draft | RoundPlan] = []
+        self._earlier = 0
+        """by how many rounds a new one lies before the one that ended last: a late entry"""
         self._signing = False
         self._editing = False
         """the keys go to the fields, not to the pane"""
@@ -93,8 +97,9 @@ class WatchPane(Pane):
                 lines.append(f"  {number}  go on with {printable(choice.round)}, {len(choice.fields)} fields entered")
             else:
                 if number == len(drafts) + 1:
-                    lines += ["New round:"]
-                lines.append(f"  {number}  {choice.title}")
+                    lines += ["New round (Left: an earlier one, for a late entry; Right: back):"]
+                taken, offset = self._begin(choice)
+                lines.append(f"  {number}  {round_name(choice, taken, offset)}")
         self._list(lines)
         self._app.show_keys(self)
 
@@ -107,11 +112,10 @@ class WatchPane(Pane):
         choice = self._choices[digit - 1]
         session = self.session
         if isinstance(choice, RoundPlan):
-            now = session.now()
-            taken, offset = begin(session.plant, choice, now, self._offset_now())
+            taken, offset = self._begin(choice)
             draft = Draft(
                 person=session.person,
-                round=f"{taken + timedelta(minutes=offset):%Y-%m-%d %H%M} {choice.title}",
+                round=round_name(choice, taken, offset),
                 subjects=choice.subjects,
                 occasion=choice.occasion,
                 taken_utc=taken,
@@ -131,6 +135,16 @@ class WatchPane(Pane):
             self._app.say(str(error))
             return
         await self._open(draft)
+
+    def _begin(self, plan: RoundPlan) -> tuple[datetime, int]:
+        now = self.session.now() - self._earlier * round_length(plan)
+        return begin(self.session.plant, plan, now, self._offset_now())
+
+    def action_shift(self, by: int) -> None:
+        """New rounds lie one earlier or later; never after the one that ended last."""
+        if self.form is None and not self.session.read_only:
+            self._earlier = max(0, self._earlier - by)
+            self._offer()
 
     def _offset_now(self) -> int:
         """Offset of the last entry in the book: the clock the ship kept last."""
@@ -336,7 +350,7 @@ class WatchPane(Pane):
 
     def help_lines(self) -> Sequence[str]:
         return (
-            "1-9           choose a round",
+            "1-9           choose a round; Left, Right: an earlier one, for a late entry",
             "Enter         leave the field and go on; a second Enter accepts what is asked",
             "Up, Down      one field back or on; Page Up, Page Down by a screen",
             "n  s  b       in an empty field: N/R not read, stopped, stand-by",

@@ -12,6 +12,7 @@ from logbook.plant.usual import engine_readings
 from logbook.reading import counters
 from logbook.reading.entering import Field, Target, Understand, Understood
 from logbook.reading.finding import Finding
+from logbook.reading.ship_time import shown_offset
 from logbook.reading.typed import Habits, read_row, read_typed
 from logbook.reading.typing_test import CounterContext, counter_findings, row_findings, span_findings
 from logbook.reading.value import State, Value
@@ -52,10 +53,21 @@ def plans_of(plant: Plant) -> tuple[RoundPlan, ...]:
     return tuple(plans)
 
 
+def round_length(plan: RoundPlan) -> timedelta:
+    """From one round of this kind to the next."""
+    return timedelta(hours=1 if plan.occasion == "round" else (24 if plan.occasion == "noon" else WATCH_HOURS))
+
+
+def round_name(plan: RoundPlan, taken: datetime, offset_min: int) -> str:
+    """`2026-05-14 0400 +03:00 ME watch`: with its offset, since a ship's date and hour may come twice."""
+    ship = taken + timedelta(minutes=offset_min)
+    return f"{ship:%Y-%m-%d %H%M} {shown_offset(offset_min)} {plan.title}"
+
+
 def begin(plant: Plant, plan: RoundPlan, now: datetime, offset_min: int) -> tuple[datetime, int]:
     """The moment a round begun now stands for: the watch, hour or noon of the ship's clock that ended last."""
     ship = now + timedelta(minutes=offset_min)
-    hours = 1 if plan.occasion == "round" else (24 if plan.occasion == "noon" else WATCH_HOURS)
+    hours = round(round_length(plan).total_seconds() / 3600)
     # A round is read in the last half hour of its watch: then it stands for the one that ends.
     ship += timedelta(minutes=30)
     base = ship.replace(minute=0, second=0, microsecond=0)
@@ -170,15 +182,16 @@ def _fields_of_meters(plant: Plant, subjects: tuple[str, ...]) -> list[Field]:
             )
         )
         if meter.temperature == "read":
-            temperature = plant.points["fuel_meter_temperature"]
+            kind = "gas_meter_temperature" if meter.key == "gas_meter" else "fuel_meter_temperature"
+            temperature = plant.points[kind]
             fields.append(
                 Field(
-                    name=f"{subject}/fuel_meter_temperature.{meter.id}",
+                    name=f"{subject}/{kind}.{meter.id}",
                     label=f"{temperature.abbreviation} {meter.id}",
                     unit=temperature.unit,
                     group="counters",
                     definition=temperature,
-                    targets=((subject, f"fuel_meter_temperature.{meter.id}"),),
+                    targets=((subject, f"{kind}.{meter.id}"),),
                 )
             )
     return fields
@@ -246,7 +259,9 @@ def understanding(
                 {f"{key}@{owner}": value for (owner, key), value in last.items()},
             )
         else:
-            value, asked = read_typed(text, item.definition, habits)
+            counted = counter_of(plant, subject, item.targets[0][1]) if item.definition.kind == "counter" else None
+            counter = counted[0] if counted else None
+            value, asked = read_typed(text, item.definition, habits, counter=counter)
             findings += asked
             if value is not None:
                 values[item.targets[0]] = value
