@@ -2,7 +2,7 @@
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from logbook.physics import account, bounds
@@ -83,6 +83,7 @@ def test_period_of_two_readings() -> None:
 POSITIVE = st.floats(0.85, 1.18)
 
 
+@settings(max_examples=40)
 @given(
     st.floats(150, 230), st.floats(150, 230), st.floats(39, 43), st.floats(39, 43),
     st.lists(POSITIVE, min_size=6, max_size=6), st.floats(1e3, 1e5), st.floats(1e3, 1e5),
@@ -111,6 +112,7 @@ def test_terms_sum_exactly(
     assert B0 * period.factors.prod() == pytest.approx(pooled)
 
 
+@settings(max_examples=40)
 @given(st.floats(1e-3, 1e3), st.floats(1e-3, 1e3))
 def test_log_mean_is_symmetric_and_between_the_two_means(x: float, y: float) -> None:
     found = float(account.log_mean(x, y))

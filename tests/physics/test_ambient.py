@@ -4,7 +4,7 @@ from collections.abc import Callable
 
 import numpy as np
 import pytest
-from hypothesis import assume, given
+from hypothesis import assume, given, settings
 from hypothesis import strategies as st
 from scipy.optimize import brentq
 
@@ -62,6 +62,7 @@ def test_the_reference_vapour_pressure_is_that_of_30_percent_at_25_degrees() -> 
     assert pytest.approx(950.6, abs=0.05) == REFERENCE_VAPOUR_PA
 
 
+@settings(max_examples=40)
 @given(
     st.sampled_from(list(ambient.ISO_3046)), st.floats(75e3, 108e3), st.floats(-10, 50), st.floats(0, 1),
     st.floats(5, 40), st.floats(0.7, 0.98),
@@ -76,6 +77,7 @@ def test_consumption_rises_whenever_k_is_below_one(
     assert found.beta * found.alpha == pytest.approx(found.k)
 
 
+@settings(max_examples=40)
 @given(st.floats(80e3, 105e3), st.floats(0, 45))
 def test_alpha_becomes_k_without_friction(pressure: float, air: float) -> None:
     found = ambient.iso_3046(CHARGE_COOLED, pressure, air, mechanical_efficiency=1.0)

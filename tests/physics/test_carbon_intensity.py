@@ -3,7 +3,7 @@
 from collections.abc import Callable
 
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from logbook.physics.carbon_intensity import RATINGS, REDUCTION_PERCENT, REFERENCE_LINES, carbon_intensity
@@ -83,6 +83,7 @@ def test_reduction_of_the_years(year: int, percent: float) -> None:
     assert 100 * (1 - found.required / found.reference) == pytest.approx(percent)
 
 
+@settings(max_examples=40)
 @given(st.sampled_from(list(REFERENCE_LINES)), st.floats(5000, 350_000), st.floats(100, 50_000))
 def test_the_rating_follows_the_bounds(ship: str, capacity: float, mass: float) -> None:
     found = carbon_intensity(ship, capacity, 2025, 40_000, {"light_fuel_oil": mass})

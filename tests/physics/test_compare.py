@@ -4,7 +4,7 @@ from collections.abc import Callable
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy import stats
 
@@ -37,6 +37,7 @@ def test_welch(
 SIDE = st.lists(st.integers(1600, 1800), min_size=3, max_size=12, unique=True)
 
 
+@settings(max_examples=40)
 @given(SIDE, SIDE)
 def test_welch_agrees_with_scipy(before: list[int], after: list[int]) -> None:
     found = compare.welch(before, after)

@@ -5,7 +5,7 @@ from math import inf
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy.optimize import minimize_scalar
 
@@ -59,6 +59,7 @@ def test_cleaning_interval() -> None:
     assert found.cost_per_day == pytest.approx(328.634, abs=1e-3)
 
 
+@settings(max_examples=40)
 @given(st.floats(100, 1e6), st.floats(0.01, 100))
 def test_no_other_interval_costs_less(price: float, growth: float) -> None:
     found = cost.cleaning_interval(price, growth)

@@ -4,7 +4,7 @@ from collections.abc import Callable
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from logbook.physics.curve import curve
@@ -51,11 +51,13 @@ def _fritsch_carlson(x: list[float], y: list[float], at: float) -> float:
     )  # fmt: skip
 
 
+@settings(max_examples=40)
 @given(st.floats(0.25, 1.0), st.lists(st.floats(150, 250), min_size=5, max_size=5))
 def test_follows_fritsch_and_carlson(at: float, values: list[float]) -> None:
     assert curve(LOAD, values)(at) == pytest.approx(_fritsch_carlson(LOAD, values, at), rel=1e-9)
 
 
+@settings(max_examples=40)
 @given(st.lists(st.floats(150, 250), min_size=3, max_size=8))
 def test_passes_its_points_without_overshoot(values: list[float]) -> None:
     loads = np.linspace(0.25, 1.0, len(values))

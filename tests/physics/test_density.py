@@ -4,7 +4,7 @@ from collections.abc import Callable
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from logbook.physics import density
@@ -33,16 +33,19 @@ def test_expansion_on_both_sides_of_each_bound(bound: float, below: float, above
     assert density.expansion(bound + 1e-6) == pytest.approx(above, rel=1e-5)
 
 
+@settings(max_examples=40)
 @given(DENSITY)
 def test_no_correction_at_the_base_temperature(rho15: float) -> None:
     assert density.volume_correction(rho15, 15.0) == 1.0
 
 
+@settings(max_examples=40)
 @given(DENSITY, st.floats(-20, 149), st.floats(0.1, 1))
 def test_volume_correction_falls_with_temperature(rho15: float, temperature: float, step: float) -> None:
     assert density.volume_correction(rho15, temperature + step) < density.volume_correction(rho15, temperature)
 
 
+@settings(max_examples=40)
 @given(st.floats(840, 1050), st.floats(-10, 150))
 def test_density15_inverts_the_density_at_temperature(rho15: float, temperature: float) -> None:
     at_t = rho15 * density.volume_correction(rho15, temperature)
@@ -85,6 +88,7 @@ def test_weight_in_air_to_true_mass() -> None:
     assert density.vacuum_from_air(1000e3, 950) / 1e3 == pytest.approx(1001.159, abs=1e-3)
 
 
+@settings(max_examples=40)
 @given(st.floats(1, 1e4), DENSITY)
 def test_weight_in_air_and_true_mass_invert_each_other(volume15: float, rho15: float) -> None:
     in_air = density.mass_in_air(volume15, rho15)

@@ -5,7 +5,7 @@ from collections.abc import Callable
 import numpy as np
 import pytest
 import ruptures
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy.stats import rankdata
 
@@ -55,10 +55,10 @@ def test_limit_for_a_rate_of_false_calls(points_between_calls: int, limit: float
 
 
 def test_cusum_calls_as_often_as_the_chain_says() -> None:
-    """K 0.5 s, H 4 s: once in 168 points (both sides), the textbook's example; 40 000 points of white noise."""
-    values, calls, start = np.random.default_rng(3).normal(size=40_000), 0, 0
+    """K 0.5 s, H 4 s: once in 168 points (both sides), the textbook's example; 20 000 points of white noise."""
+    values, calls, start = np.random.default_rng(3).normal(size=20_000), 0, 0
     while True:
-        found = detect.cusum(values[start : start + 2000], 0, 0.5, 4)
+        found = detect.cusum(values[start : start + 1000], 0, 0.5, 4)
         if found.first_signal is None:
             break
         calls, start = calls + 1, start + found.first_signal + 1
@@ -86,6 +86,7 @@ def test_since_interval_of_the_change() -> None:
     assert found.since(scatter, n_effective_ratio=7) == (10, 12)
 
 
+@settings(max_examples=40)
 @given(st.lists(st.integers(-50, 50), min_size=4, max_size=40))
 def test_change_point_agrees_with_ruptures(values: list[int]) -> None:
     y = np.array(values, float)
@@ -100,6 +101,7 @@ def test_dynamic_programming_of_ruptures_finds_the_same_split() -> None:
     assert ruptures.Dynp(model="l2", min_size=1, jump=1).fit(np.array(STEP)).predict(n_bkps=1) == [11, 20]
 
 
+@settings(max_examples=40)
 @given(st.lists(st.integers(-5, 5), min_size=4, max_size=30))
 def test_pettitt_from_its_definition(values: list[int]) -> None:
     """K is the largest |sum of signs between the two sides|, and so by ranks; ties share theirs."""

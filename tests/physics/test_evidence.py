@@ -2,7 +2,7 @@
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from logbook.physics import evidence
@@ -53,6 +53,7 @@ CODES = st.lists(st.integers(-2, 2), min_size=5, max_size=5).filter(any)
 READ = st.lists(st.floats(-4, 4).filter(lambda z: abs(z) > 1e-3), min_size=5, max_size=5)
 
 
+@settings(max_examples=40)
 @given(READ, CODES)
 def test_likeness_is_a_cosine_and_evidence_its_length(z: list[float], signature: list[int]) -> None:
     likeness = evidence.likeness(z, signature)

@@ -4,7 +4,7 @@ from collections.abc import Callable
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from logbook.physics import fuel, power
@@ -41,6 +41,7 @@ def test_gross_specific_energy(kind: str, rho: float, sulphur: float, water: flo
     assert fuel.calorific_value(kind, rho, sulphur, water, ash)[1] / 1e6 == pytest.approx(gross, abs=1e-4)
 
 
+@settings(max_examples=40)
 @given(st.sampled_from(["residual", "distillate"]), st.floats(840, 1000), st.floats(0, 2), st.floats(0, 0.9))
 def test_water_lowers_the_heating_value(kind: str, rho: float, sulphur: float, water: float) -> None:
     wet, _ = fuel.calorific_value(kind, rho, sulphur, water + 0.1)

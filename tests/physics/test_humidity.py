@@ -5,7 +5,7 @@ from collections.abc import Callable
 import numpy as np
 import psychrolib
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from logbook.physics import humidity
@@ -36,6 +36,7 @@ def test_humidity_ratio(temperature: float, relative: float, pressure: float, ex
     assert humidity.humidity_ratio(temperature, relative, pressure) == pytest.approx(expected, abs=2e-5)
 
 
+@settings(max_examples=40)
 @given(st.floats(1, 50), st.floats(0, 1), st.floats(80e3, 105e3))
 def test_moist_air_agrees_with_psychrolib(temperature: float, relative: float, pressure: float) -> None:
     saturation = psychrolib.GetSatVapPres(temperature)
@@ -47,6 +48,7 @@ def test_moist_air_agrees_with_psychrolib(temperature: float, relative: float, p
     assert humidity.moist_density(temperature, relative, pressure) == pytest.approx(density, rel=1e-4)
 
 
+@settings(max_examples=40)
 @given(st.floats(-20, 60), st.floats(0.01, 1))
 def test_damp_air_is_lighter_than_dry(temperature: float, relative: float) -> None:
     damp, dry = (humidity.moist_density(temperature, phi, 100e3) for phi in (relative, 0.0))

@@ -5,7 +5,7 @@ from math import pi
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from logbook.physics import power
@@ -37,6 +37,7 @@ def test_mean_pressure_and_cylinder_constant(
     assert constant * pressure_bar * speed_rpm * 6 == pytest.approx(power_kw, rel=1e-4)
 
 
+@settings(max_examples=40)
 @given(st.floats(1e5, 30e5), st.floats(0.5, 20), st.sampled_from(["two-stroke", "four-stroke"]))
 def test_mean_pressure_inverts_power(pressure: float, speed: float, cycle: str) -> None:
     found = power.mean_pressure(power.power_from_mean_pressure(pressure, 0.05, 6, speed, cycle), 0.05, 6, speed, cycle)
@@ -122,6 +123,7 @@ def test_propeller_law(spot_kw: float, ratio: float, expected_kw: float, toleran
     assert power.propeller_power(spot_kw * 1e3, ratio) / 1e3 == pytest.approx(expected_kw, abs=tolerance)
 
 
+@settings(max_examples=40)
 @given(st.floats(0.3, 1.1))
 def test_running_index_is_one_on_the_propeller_curve(ratio: float) -> None:
     assert power.running_index(power.propeller_power(1.0, ratio), ratio) == pytest.approx(1.0)

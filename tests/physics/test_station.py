@@ -3,7 +3,7 @@
 from collections.abc import Callable
 
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from logbook.physics import power, station
@@ -45,6 +45,7 @@ def test_heat_rate_gross_and_net(kwh: float, heat_rate: float, percent: float) -
     assert 100 * eta == pytest.approx(percent, abs=1e-3)
 
 
+@settings(max_examples=40)
 @given(st.floats(1, 800), HOURS, HOURS, HOURS)
 def test_factors_are_shares_of_the_period(service: float, reserve: float, planned: float, forced: float) -> None:
     found = station.availability(service, reserve, planned, forced)

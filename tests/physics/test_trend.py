@@ -5,7 +5,7 @@ from collections.abc import Callable
 import numpy as np
 import pymannkendall
 import pytest
-from hypothesis import assume, given
+from hypothesis import assume, given, settings
 from hypothesis import strategies as st
 from scipy import stats
 from scipy.optimize import curve_fit
@@ -27,6 +27,7 @@ def test_mann_kendall() -> None:
 SERIES = st.lists(st.integers(-20, 20), min_size=8, max_size=40)
 
 
+@settings(max_examples=40)
 @given(SERIES)
 def test_mann_kendall_agrees_with_pymannkendall(values: list[int]) -> None:
     assume(len(set(values)) > 1)
@@ -53,6 +54,7 @@ def test_theil_sen() -> None:
     assert found.n == 14
 
 
+@settings(max_examples=40)
 @given(st.lists(st.integers(-500, 500), min_size=8, max_size=40, unique=True), st.floats(0.1, 100))
 def test_theil_sen_agrees_with_scipy(values: list[int], spacing: float) -> None:
     times = np.arange(len(values)) * spacing

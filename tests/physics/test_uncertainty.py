@@ -5,7 +5,7 @@ from collections.abc import Callable
 import GTC
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 from uncertainties import ufloat, umath
 
@@ -84,6 +84,7 @@ def test_supply_less_return(ratio: float, at: tuple[float, float, float], column
     assert uncertainty.supply_less_return(accuracy, ratio) == pytest.approx(at[column], abs=5.1e-3)
 
 
+@settings(max_examples=40)
 @given(st.floats(1.01, 10.0), POSITIVE)
 def test_supply_less_return_agrees_with_uncertainties(ratio: float, accuracy: float) -> None:
     consumed = ufloat(ratio, ratio * accuracy) - ufloat(ratio - 1, (ratio - 1) * accuracy)
@@ -214,6 +215,7 @@ def test_of_excess() -> None:
     assert 100 * found == pytest.approx(1.0825, abs=1e-4)
 
 
+@settings(max_examples=40)
 @given(POSITIVE, POSITIVE, POSITIVE, POSITIVE, POSITIVE)
 def test_of_excess_agrees_with_uncertainties(ref: float, a: float, fuel: float, energy: float, lcv: float) -> None:
     one = [ufloat(1, u) for u in (ref, a, fuel, energy, lcv)]
