@@ -33,6 +33,7 @@ async def _draw(session: Session, name: str, *, wait_for: str = "", typed: tuple
         picture = app.export_screenshot(title=f"{session.plant.name}: {name}")
     # Rich links a font from the net; the picture has to do without one.
     picture = re.sub(r"@font-face\s*{.*?}", "", picture, flags=re.DOTALL)
+    picture = picture.replace("<text ", '<text xml:space="preserve" ')
     (FOLDER / f"{name.lower()}.svg").write_text(picture, encoding="utf-8")
 
 

@@ -157,9 +157,7 @@ def _counters(parts: dict[str, pd.DataFrame], elapsed: float) -> Section:
         rows.append((name, f"{elapsed:.1f}", f"{hours:.1f}", f"{energy / 1000:.1f}", f"{mass:.1f}", f"{per_day:.2f}"))
     return Section(
         "Hours, energy and fuel",
-        [
-            "Fuel of engines on a common meter is not divided between them; spans without a difference are not in the sums."
-        ],
+        ["Fuel of a common meter is not divided between its engines; spans without a difference are left out."],
         [Table(("engine", "elapsed h", "running h", "brake MWh", "fuel t", "t per 24 h"), rows)],
     )
 

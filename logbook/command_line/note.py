@@ -23,13 +23,13 @@ _NUMBERS = ("closing", "opening", "digits", "multiplier", "decimals", "entry", "
 
 def configure(parser: argparse.ArgumentParser) -> None:
     parser.description = (
-        "What happened or was done, for the book: event, work, lot, setting, remark, clock. Some are borders or marks of"
-        " the trend. Words of events and work: see the list of `logbook note PLANT event event=help`."
+        "What happened or was done, for the book: event, work, lot, setting, remark, clock. Some are borders or marks"
+        " of the trend. A wrong word is answered with the list of those there are."
     )
     parser.epilog = (
         "examples:\n"
         "  logbook note plants/northern_star work work=turbocharger_cleaning --of ME --at 2026-05-14T10:00\n"
-        "  logbook note plants/northern_star lot lot=R16 grade='RMG 380' density15_kg_m3=962.0 sulphur_percent=0.47\n"
+        "  logbook note plants/northern_star lot lot=R16 grade='RMG 380' density15_kg_m3=962 sulphur_percent=0.47\n"
         "  logbook note plants/northern_star event event=change_over lot=R16 engines=ME\n"
         "  logbook note plants/northern_star event event=instrument_exchanged instrument=fuel_meter_supply.ME_in"
         " closing=4815910 opening=120 --of ME"

@@ -51,7 +51,7 @@ def current_label(screen: TerminalScreen) -> str:
 
 def text_for(label: str) -> str:
     """What is typed into the field of that label; the longest name that fits."""
-    fitting = [name for name in TYPED if label == name or label.startswith(f"{name} ") or label.startswith(name)]
+    fitting = [name for name in TYPED if label.startswith(name)]
     return TYPED[max(fitting, key=len)] if fitting else ""
 
 
