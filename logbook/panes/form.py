@@ -151,7 +151,7 @@ class RoundForm(ScrollView, can_focus=True):
     def _on_paste(self, event: events.Paste) -> None:
         # A whole watch may come as one text: each line goes into the next field, as if it were typed.
         event.stop()
-        lines = event.text.splitlines()
+        lines = event.text.replace("\r\n", "\n").replace("\r", "\n").split("\n")
         for number, line in enumerate(lines):
             for sign in printable(line.expandtabs(1)):
                 self._insert(sign)
