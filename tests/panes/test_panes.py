@@ -28,7 +28,8 @@ def folder(tmp_path: Path) -> Path:
 
 def session(folder: Path, book: Book, *, read_only: bool = False, glyphs: Glyphs = BOX) -> Session:
     return Session(
-        plant=read_plant(folder), folder=folder, book=book, drafts=Drafts(folder), person="Third engineer", identity_by="as stated",
+        plant=read_plant(folder), folder=folder, book=book, drafts=Drafts(folder),
+        person="Third engineer", identity_by="as stated",
         read_only=read_only, glyphs=glyphs, now=lambda: NOW,
     )  # fmt: skip
 
