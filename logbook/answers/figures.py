@@ -13,6 +13,7 @@ from logbook.answers.headline import headline
 from logbook.book.entry import Entry
 from logbook.judgement import figures as judged
 from logbook.judgement.figures import COLUMNS
+from logbook.judgement.group import common_meters, group_figures
 from logbook.plant.records import Plant
 
 # Figure -> (formula in words, the figures it is made of, keys of the readings behind it, source)
@@ -72,7 +73,14 @@ _TRACES: dict[str, tuple[str, tuple[str, ...], tuple[str, ...], str]] = {
 
 def figures(plant: Plant, entries: Sequence[Entry], engine_id: str) -> pd.DataFrame:
     """One row a reading; the columns and names that figures carry outside."""
+    if engine_id in groups(plant):
+        return group_figures(plant, entries, engine_id)
     return judged.figures(plant, entries, engine_id)
+
+
+def groups(plant: Plant) -> tuple[str, ...]:
+    """Fuel meters that serve several engines: figures exist for the group, under the meter's name."""
+    return tuple(meter.id for meter in common_meters(plant))
 
 
 def records(frame: pd.DataFrame) -> Iterator[dict[str, Any]]:

@@ -21,7 +21,7 @@ def configure(parser: argparse.ArgumentParser) -> None:
         "  logbook figures plants/northern_star ME --explain 1042.excess_gap"
     )
     shared.plant_folder(parser)
-    parser.add_argument("engine", metavar="ENGINE", nargs="?", help="only this engine")
+    parser.add_argument("engine", metavar="ENGINE", nargs="?", help="only this engine, or the common meter of a group")
     parser.add_argument("--explain", metavar="ENTRY.FIGURE", help="unfold one figure to formula, readings and source")
     parser.add_argument("--last", type=int, metavar="COUNT", help="only the last ones")
     shared.span(parser)
@@ -35,11 +35,11 @@ def run(arguments: argparse.Namespace, environment: Environment) -> ExitCode:
 
     with opened(arguments.plant, environment, environment.person(None), write=False) as (plant, book):
         entries = book.entries()
-    engines = [engine.id for engine in plant.engines]
-    if arguments.engine is not None and arguments.engine not in engines:
-        raise Refused(f"This plant has no engine '{arguments.engine}'; it has: {', '.join(engines)}.")
     from logbook.answers import figures as answer
 
+    engines = [*(engine.id for engine in plant.engines), *answer.groups(plant)]
+    if arguments.engine is not None and arguments.engine not in engines:
+        raise Refused(f"This plant has no engine '{arguments.engine}'; it has: {', '.join(engines)}.")
     since, until = shared.moment(arguments.since), shared.moment(arguments.until, end_of_day=True)
     rows = []
     for engine in [arguments.engine] if arguments.engine else engines:
