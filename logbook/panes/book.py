@@ -51,7 +51,7 @@ class BookPane(Pane):
         self.query_one("#book-entry").display = False
 
     def shown(self) -> None:
-        self.query_one("#book-table", DataTable).focus()
+        self.screen.set_focus(self.query_one("#book-table", DataTable))
         mark = self.session.book.change_mark()
         if mark != self._mark:
             self._mark = mark
@@ -102,7 +102,7 @@ class BookPane(Pane):
 
     def action_close(self) -> None:
         self.query_one("#book-entry").display = False
-        self.query_one("#book-table", DataTable).focus()
+        self.screen.set_focus(self.query_one("#book-table", DataTable))
 
     def action_engine(self) -> None:
         subjects = [None, *(engine.id for engine in self.session.plant.engines), "plant"]

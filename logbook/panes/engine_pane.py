@@ -43,7 +43,7 @@ class EnginePane(Pane):
         return self.session.plant.engines[self._engine].id
 
     def shown(self) -> None:
-        self.query_one(VerticalScroll).focus()
+        self.screen.set_focus(self.query_one(VerticalScroll))
         mark = (self.engine, *self.session.book.change_mark())
         if mark != self._mark:
             self._mark = mark

@@ -64,14 +64,14 @@ class WatchPane(Pane):
         if self.form is not None:
             self._edit()
         else:
-            self.focus()
+            self.screen.set_focus(self)
             self._offer()
 
     def _edit(self) -> None:
         """The keys go to the fields."""
         assert self.form is not None
         self._editing, self._signing = True, False
-        self.form.focus()
+        self.screen.set_focus(self.form)
         self._app.show_keys(self)
         self._tell()
 
@@ -232,7 +232,7 @@ class WatchPane(Pane):
     def _to_pane(self) -> None:
         """The keys go to the pane."""
         self._editing, self._signing = False, False
-        self.focus()
+        self.screen.set_focus(self)
         self._app.show_keys(self)
 
     def action_resume(self) -> None:
@@ -255,7 +255,7 @@ class WatchPane(Pane):
             await self.form.remove()
         self.form, self.draft, self._signing, self._editing = None, None, False, False
         self.query_one("#watch-list", Static).display = True
-        self.focus()
+        self.screen.set_focus(self)
 
     # Signing off
 
