@@ -35,8 +35,9 @@ def configure(parser: argparse.ArgumentParser) -> None:
 def run(arguments: argparse.Namespace, environment: Environment) -> ExitCode:
     from logbook.book.entry import NewEntry, reading_body
     from logbook.command_line.plant_folder import opened
+    from logbook.plant.walk import PLANT
     from logbook.reading.entering import Target
-    from logbook.reading.round import PLANT, field_for, understanding
+    from logbook.reading.round import field_for, understanding
     from logbook.reading.ship_time import TimeRefused, parse_moment
     from logbook.reading.value import OCCASIONS, Value
 

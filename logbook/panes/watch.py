@@ -17,8 +17,9 @@ from logbook.book.drafts import Draft, DraftUnusable, Typed
 from logbook.book.entry import NewEntry, reading_body
 from logbook.panes.form import RoundForm
 from logbook.panes.pane import Pane
+from logbook.plant.walk import PLANT
 from logbook.reading.entering import Round, Target
-from logbook.reading.round import PLANT, RoundPlan, begin, fields_of, plans_of, round_length, round_name, understanding
+from logbook.reading.round import RoundPlan, begin, fields_of, plans_of, round_length, round_name, understanding
 from logbook.reading.text import printable
 from logbook.reading.value import Value
 

@@ -6,9 +6,9 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from datetime import datetime, timedelta
 
-from logbook.plant.catalogue import WALK_GROUPS, ReadingDefinition
-from logbook.plant.records import Counter, Engine, Meter, Plant
-from logbook.plant.usual import engine_readings
+from logbook.plant.catalogue import WALK_GROUPS
+from logbook.plant.records import Counter, Engine, Plant
+from logbook.plant.walk import IN_PLACES, PLANT, WalkItem, meter_point, walk
 from logbook.reading import counters
 from logbook.reading.entering import Field, Target, Understand, Understood
 from logbook.reading.finding import Finding
@@ -17,7 +17,6 @@ from logbook.reading.typed import Habits, read_row, read_typed
 from logbook.reading.typing_test import CounterContext, counter_findings, row_findings, span_findings
 from logbook.reading.value import State, Value
 
-PLANT = "plant"
 WATCH_HOURS = 4
 SHIP_AT_NOON = ("distance_observed", "distance_log", "draught_forward", "draught_aft", "wind_force")
 
@@ -75,150 +74,66 @@ def begin(plant: Plant, plan: RoundPlan, now: datetime, offset_min: int) -> tupl
     return base - timedelta(hours=into, minutes=offset_min), offset_min
 
 
-def _abbreviated(point: ReadingDefinition, cycle: str, tail: str) -> str:
-    head = f"{point.abbreviation_for(cycle)} {tail}".rstrip()
-    return f"{head:<{_WIDTH_OF_ABBREVIATION}} {point.label_for(cycle)}"
+def _label(item: WalkItem, cycle: str, tail: str) -> str:
+    """The trade's abbreviation, what it is of, and as much of the words as fit."""
+    head = f"{item.definition.abbreviation_for(cycle)} {tail}".rstrip()
+    return f"{head:<{_WIDTH_OF_ABBREVIATION}} {item.definition.label_for(cycle)}"
 
 
-def _places(point: ReadingDefinition, engine: Engine) -> tuple[str, ...]:
-    if point.per in ("cylinder", "turbocharger", "cooler", "bearing"):
-        return tuple(str(number) for number in range(1, engine.count_of(point.per) + 1))
-    return ("",)
-
-
-def _key(point: ReadingDefinition, place: str) -> str:
-    return f"{point.key}.{place}" if place else point.key
-
-
-def _points_of(plant: Plant, engine: Engine) -> list[ReadingDefinition]:
-    keys = engine.readings or engine_readings(engine.cycle, engine.fuel, engine.use)
-    points = [
-        plant.points[key] for key in keys if plant.points[key].per not in ("meter", "tank", "lot", "plant", "ship")
-    ]
-    if engine.shaft_generator is None and not engine.readings:
-        points = [point for point in points if not point.key.startswith("shaft_generator")]
-    if not engine.auxiliary_blowers and not engine.readings:
-        points = [point for point in points if point.key != "auxiliary_blower_state"]
-    return points
-
-
-def _fields_of_engine(plant: Plant, engine: Engine) -> list[Field]:
-    fields = []
-    for point in _points_of(plant, engine):
-        places = _places(point, engine)
-        if not places:
-            continue
-        tail = f"{places[0]}-{places[-1]}" if len(places) > 1 else ""
-        fields.append(
-            Field(
-                name=f"{engine.id}/{point.key}",
-                label=_abbreviated(point, engine.cycle, tail),
-                unit=point.unit,
-                group=point.walk,
-                definition=point,
-                targets=tuple((engine.id, _key(point, place)) for place in places),
-            )
-        )
-    return fields
+def _field(item: WalkItem, cycle: str, *, of: str = "") -> Field:
+    tail = f"{item.places[0]}-{item.places[-1]}" if len(item.places) > 1 else item.key.partition(".")[2]
+    return Field(
+        name=f"{item.subject}/{item.key}",
+        label=_label(item, cycle, of or tail),
+        unit=item.unit,
+        group=item.definition.walk,
+        definition=item.definition,
+        targets=tuple((item.subject, key) for key in item.keys),
+    )
 
 
 def _fields_across(plant: Plant, engines: list[Engine]) -> list[Field]:
     """A row across the sets for each point that stands alone on a set; a row of its own for cylinders."""
-    fields = []
-    points = {point.key: point for engine in engines for point in _points_of(plant, engine)}
-    for point in points.values():
-        having = [engine for engine in engines if point in _points_of(plant, engine)]
-        single = [engine for engine in having if len(_places(point, engine)) == 1]
-        if single:
-            fields.append(
-                Field(
-                    name=f"{'+'.join(engine.id for engine in single)}/{point.key}",
-                    label=_abbreviated(point, single[0].cycle, ""),
-                    unit=point.unit,
-                    group=point.walk,
-                    definition=point,
-                    targets=tuple((engine.id, _key(point, _places(point, engine)[0])) for engine in single),
-                )
-            )
-        for engine in having:
-            places = _places(point, engine)
-            if len(places) > 1:
-                fields.append(
-                    Field(
-                        name=f"{engine.id}/{point.key}",
-                        label=_abbreviated(point, engine.cycle, f"{engine.id}"),
-                        unit=point.unit,
-                        group=point.walk,
-                        definition=point,
-                        targets=tuple((engine.id, _key(point, place)) for place in places),
-                    )
-                )
-    return fields
-
-
-def _meter_point(plant: Plant, meter: Meter) -> ReadingDefinition:
-    """The catalogue's point, in the unit that this meter shows."""
-    from dataclasses import replace
-
-    family = {"kg": "mass", "t": "mass", "kWh": "energy", "MWh": "energy", "Nm3": "gas volume", "Sm3": "gas volume"}
-    return replace(plant.points[meter.key], unit=meter.unit, family=family.get(meter.unit, "volume"))
-
-
-def _fields_of_meters(plant: Plant, subjects: tuple[str, ...]) -> list[Field]:
-    fields = []
-    for meter in plant.meters:
-        if not set(meter.serves) & set(subjects):
-            continue
-        subject = meter.serves[0] if len(meter.serves) == 1 else PLANT
-        point = _meter_point(plant, meter)
-        fields.append(
-            Field(
-                name=f"{subject}/{meter.key}.{meter.id}",
-                label=f"{point.abbreviation} {meter.id}",
-                unit=meter.unit,
-                group="counters",
-                definition=point,
-                targets=((subject, f"{meter.key}.{meter.id}"),),
-            )
+    found: dict[str, Field] = {}
+    across: dict[str, list[tuple[Engine, WalkItem]]] = {}
+    for engine in engines:
+        for item in walk(plant, engine):
+            own = item.subject == engine.id
+            if own and len(item.keys) == 1 and item.definition.per != "meter":
+                if item.definition.key not in across:
+                    found[item.definition.key] = _field(item, engine.cycle)
+                across.setdefault(item.definition.key, []).append((engine, item))
+            else:
+                field = _field(item, engine.cycle, of=engine.id if own and len(item.keys) > 1 else "")
+                found.setdefault(field.name, field)
+    for key, having in across.items():
+        first_engine, first = having[0]
+        found[key] = Field(
+            name=f"{'+'.join(engine.id for engine, _ in having)}/{key}",
+            label=_label(first, first_engine.cycle, ""),
+            unit=first.unit,
+            group=first.definition.walk,
+            definition=first.definition,
+            targets=tuple((engine.id, item.keys[0]) for engine, item in having),
         )
-        if meter.temperature == "read":
-            kind = "gas_meter_temperature" if meter.key == "gas_meter" else "fuel_meter_temperature"
-            temperature = plant.points[kind]
-            fields.append(
-                Field(
-                    name=f"{subject}/{kind}.{meter.id}",
-                    label=f"{temperature.abbreviation} {meter.id}",
-                    unit=temperature.unit,
-                    group="counters",
-                    definition=temperature,
-                    targets=((subject, f"{kind}.{meter.id}"),),
-                )
-            )
-    return fields
-
-
-def _fields_of_plant(plant: Plant, occasion: str) -> list[Field]:
-    keys = plant.plant_readings + (SHIP_AT_NOON if occasion == "noon" else ())
-    return [
-        Field(
-            name=f"{PLANT}/{key}",
-            label=_abbreviated(plant.points[key], "two-stroke", ""),
-            unit=plant.points[key].unit,
-            group=plant.points[key].walk,
-            definition=plant.points[key],
-            targets=((PLANT, key),),
-        )
-        for key in dict.fromkeys(keys)
-    ]
+    order = {group: number for number, group in enumerate(WALK_GROUPS)}
+    return sorted(found.values(), key=lambda item: order[item.group])
 
 
 def fields_of(plant: Plant, subjects: tuple[str, ...], occasion: str) -> tuple[Field, ...]:
     """The fields of a round in walk order: engines, their meters, and the plant once."""
     engines = [plant.engine(subject) for subject in subjects]
-    found = _fields_across(plant, engines) if len(engines) > 1 else _fields_of_engine(plant, engines[0])
-    found += _fields_of_meters(plant, subjects) + _fields_of_plant(plant, occasion)
-    order = {group: number for number, group in enumerate(WALK_GROUPS)}
-    return tuple(sorted(found, key=lambda item: order.get(item.group, len(order))))
+    if len(engines) == 1:
+        found = [_field(item, engines[0].cycle) for item in walk(plant, engines[0])]
+    else:
+        found = _fields_across(plant, engines)
+    names = {item.name for item in found}
+    if occasion == "noon":
+        for key in SHIP_AT_NOON:
+            point = plant.points[key]
+            field = _field(WalkItem(key, point, (), point.label, point.unit, PLANT), "two-stroke")
+            found += [field] if field.name not in names else []
+    return tuple(found)
 
 
 def counter_of(plant: Plant, subject: str, key: str) -> tuple[Counter, float] | None:
@@ -319,14 +234,14 @@ def field_for(plant: Plant, subject: str, key: str) -> Field | None:
         if meter is None:
             return None
         if meter.key == name:
-            point = _meter_point(plant, meter)
+            point = meter_point(plant, meter)
             unit = point.unit
-    elif subject != PLANT and point.per in ("cylinder", "turbocharger", "cooler", "bearing"):
-        places = _places(point, plant.engine(subject))
+    elif subject != PLANT and point.per in IN_PLACES:
+        places = [str(number) for number in range(1, plant.engine(subject).count_of(point.per) + 1)]
         if place and place not in places:
             return None
         if not place:
-            targets = tuple((subject, _key(point, one)) for one in places)
+            targets = tuple((subject, f"{key}.{one}") for one in places)
     elif place:
         return None
     return Field(f"{subject}/{key}", point.label, unit, point.walk, point, targets)
