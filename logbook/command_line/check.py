@@ -93,6 +93,7 @@ def _lines(found: Iterable[Missing]) -> Iterator[str]:
 
 def _book(folder: Path, plant: Plant) -> tuple[ExitCode, dict[str, Any] | None]:
     """What is to be said of the book; None where there is none yet."""
+    from logbook.answers.questions import open_questions
     from logbook.book.book import FILE_NAME, Book, BookUnusable
     from logbook.book.verify import breaks
 
@@ -110,6 +111,7 @@ def _book(folder: Path, plant: Plant) -> tuple[ExitCode, dict[str, Any] | None]:
         with Book.open(folder, read_only=True) as book:
             number, digest = book.head()
             broken = [place.what for place in breaks(noted(book.rows()))]
+            questions = open_questions(plant, book.entries())
     except BookUnusable as error:
         return ExitCode.CANNOT_USE_PLANT, {"usable": False, "sentence": str(error)}
     known = {"plant", *(engine.id for engine in plant.engines), *(tank.id for tank in plant.tanks)}
@@ -119,6 +121,7 @@ def _book(folder: Path, plant: Plant) -> tuple[ExitCode, dict[str, Any] | None]:
         "digest": digest,
         "breaks": broken,
         "not_in_plant": sorted(subjects - known),
+        "open_questions": [line for question in questions for line in question.lines()],
     }
 
 
@@ -135,6 +138,10 @@ def _said(book: dict[str, Any] | None) -> Iterator[str]:
             yield f"The book is NOT whole: {count} break{'s' if count > 1 else ''} of the chain."
         else:
             yield f"The book is whole: {book['entries']} entries; digest of the last:\n{book['digest']}"
+        if book["open_questions"]:
+            yield ""
+            yield "Counter questions that are open (their spans have no difference until one is answered):"
+            yield from book["open_questions"]
         if book["not_in_plant"]:
             yield _wrapped(
                 f"The book has readings of {', '.join(book['not_in_plant'])}, which plant.toml does not have: "
