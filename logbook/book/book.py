@@ -95,7 +95,7 @@ class Book:
     def append(self, entry: NewEntry) -> Entry:
         """Write one entry; when this returns, it is on the disk. Raises BookUnusable, AmendmentRefused."""
         (row,) = self._append([entry], None)
-        return entry_of(row)
+        return entry_of(row, entry.body)
 
     def append_many(self, entries: Iterable[NewEntry], progress: Callable[[int], None] | None = None) -> int:
         """Write many entries in one transaction: all or none. Returns how many.

@@ -110,8 +110,8 @@ COLUMNS = (
 
 def digest_of(row: Row) -> str:
     """SHA-256 over the digest before and the canonical bytes of all else in the row."""
-    # The body goes in as its stored text: a body that was changed but means the same is still a change.
-    content = canonical_json([*row[:14], row[14]])
+    # The body goes in last and as its stored text: a body that was changed but means the same is still a change.
+    content = f"{canonical_json([*row[:13], row[14]])}\n{row[13]}"
     return hashlib.sha256(content.encode("utf-8", "surrogatepass")).hexdigest()
 
 
@@ -140,8 +140,8 @@ def row_of(entry: NewEntry, number: int, entered_utc: datetime, previous_digest:
     return (*row[:15], digest_of(row))
 
 
-def entry_of(row: Row) -> Entry:
-    """The record behind a row."""
+def entry_of(row: Row, body: Mapping[str, Any] | None = None) -> Entry:
+    """The record behind a row; `body` where it is at hand already, as when it was just written."""
     return Entry(
         number=row[0],
         schema=row[1],
@@ -156,7 +156,7 @@ def entry_of(row: Row) -> Entry:
         source=row[10],
         replaces=row[11],
         reason=row[12],
-        body=json.loads(row[13]),
+        body=json.loads(row[13]) if body is None else body,
         previous_digest=row[14],
         digest=row[15],
     )
