@@ -11,7 +11,7 @@ from logbook.command_line.environment import Environment, ExitCode, Refused
 
 def configure(parser: argparse.ArgumentParser) -> None:
     parser.description = "A consistent copy of the book, made while others go on writing. Never overwrites a file."
-    parser.epilog = "example:\n  logbook backup plants/northern_star stick/logbook-2026-05-31.db"
+    parser.epilog = "example:\n  logbook backup my_ship stick/logbook-2026-05-31.db"
     shared.plant_folder(parser)
     parser.add_argument("file", metavar="FILE", type=Path, help="the copy to be made")
 

@@ -25,7 +25,7 @@ def configure(parser: argparse.ArgumentParser) -> None:
         "which figures go without it; then whether the book, where there is one, is whole."
     )
     parser.epilog = (
-        "example:\n  logbook check plants/northern_star\n\n"
+        "example:\n  logbook check my_ship\n\n"
         "Ends with 3 if the plant cannot be used, 1 if the book is not whole, else 0:\n"
         "nothing that is missing hinders."
     )

@@ -19,7 +19,7 @@ def configure(parser: argparse.ArgumentParser) -> None:
     )
     parser.epilog = (
         "example:\n"
-        "  logbook enter plants/northern_star ME --at 2026-05-14T04:00+03:00 \\\n"
+        "  logbook enter my_ship ME --at 2026-05-14T04:00+03:00 \\\n"
         "      engine_speed=98.2 shaft_power=9610 cylinder_exhaust_temperature='340 352 348 351 347 340'"
     )
     shared.plant_folder(parser)

@@ -11,7 +11,7 @@ from logbook.command_line.environment import Environment, ExitCode, Refused
 
 def configure(parser: argparse.ArgumentParser) -> None:
     parser.description = "The book in order of time. Entries that an amendment replaced are shown struck out (~)."
-    parser.epilog = "example:\n  logbook entries plants/northern_star ME --from 2026-05-01 --to 2026-05-31"
+    parser.epilog = "example:\n  logbook entries my_ship ME --from 2026-05-01 --to 2026-05-31"
     shared.plant_folder(parser)
     parser.add_argument("engine", metavar="ENGINE", nargs="?", help="only of this engine (or plant, tank, lot)")
     parser.add_argument("--entry", type=int, metavar="NUMBER", help="one entry in full")

@@ -17,8 +17,8 @@ def configure(parser: argparse.ArgumentParser) -> None:
     )
     parser.epilog = (
         "example:\n"
-        "  logbook figures plants/northern_star ME --from 2026-05-01 --to 2026-05-31 > may.csv\n"
-        "  logbook figures plants/northern_star ME --explain 1042.excess_gap"
+        "  logbook figures my_ship ME --from 2026-05-01 --to 2026-05-31 > may.csv\n"
+        "  logbook figures my_ship ME --explain 1042.excess_gap"
     )
     shared.plant_folder(parser)
     parser.add_argument("engine", metavar="ENGINE", nargs="?", help="only this engine, or the common meter of a group")

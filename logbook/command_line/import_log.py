@@ -23,9 +23,9 @@ def configure(parser: argparse.ArgumentParser) -> None:
     )
     parser.epilog = (
         "example:\n"
-        "  logbook import plants/northern_star old_log.csv --suggest > old_log.toml     (read it, mend it)\n"
-        "  logbook import plants/northern_star old_log.csv --columns old_log.toml --check\n"
-        "  logbook import plants/northern_star old_log.csv --columns old_log.toml"
+        "  logbook import my_ship old_log.csv --suggest > old_log.toml     (read it, mend it)\n"
+        "  logbook import my_ship old_log.csv --columns old_log.toml --check\n"
+        "  logbook import my_ship old_log.csv --columns old_log.toml"
     )
     shared.plant_folder(parser)
     parser.add_argument("file", metavar="FILE", type=Path, help="CSV or XLSX")

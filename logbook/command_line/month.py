@@ -10,7 +10,7 @@ from logbook.command_line.environment import Environment, ExitCode, Refused
 
 def configure(parser: argparse.ArgumentParser) -> None:
     parser.description = "The monthly performance summary with the figures that exist, as text, Markdown or CSV."
-    parser.epilog = "example:\n  logbook month plants/northern_star 2026-05 --format markdown > may.md"
+    parser.epilog = "example:\n  logbook month my_ship 2026-05 --format markdown > may.md"
     shared.plant_folder(parser)
     parser.add_argument("month", metavar="YYYY-MM", nargs="?", help="the month, by the plant's clock")
     parser.add_argument("--format", default="text", choices=["text", "markdown", "csv"], help="in which form")

@@ -15,7 +15,7 @@ def configure(parser: argparse.ArgumentParser) -> None:
         "numbers are examples, to be replaced by those of the maker's papers. Nothing that\n"
         "exists is overwritten."
     )
-    parser.epilog = "example:\n  logbook new plants/northern_star --kind ship"
+    parser.epilog = "example:\n  logbook new my_ship --kind ship"
     parser.add_argument("folder", metavar="FOLDER", type=Path, help="the folder to be made; it may exist already")
     parser.add_argument("--kind", required=True, choices=["ship", "station"], help="what the plant is")
 

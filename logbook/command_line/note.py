@@ -28,10 +28,10 @@ def configure(parser: argparse.ArgumentParser) -> None:
     )
     parser.epilog = (
         "examples:\n"
-        "  logbook note plants/northern_star work work=turbocharger_cleaning --of ME --at 2026-05-14T10:00\n"
-        "  logbook note plants/northern_star lot lot=R16 grade='RMG 380' density15_kg_m3=962 sulphur_percent=0.47\n"
-        "  logbook note plants/northern_star event event=change_over lot=R16 engines=ME\n"
-        "  logbook note plants/northern_star event event=instrument_exchanged instrument=fuel_meter_supply.ME_in"
+        "  logbook note my_ship work work=turbocharger_cleaning --of ME --at 2026-05-14T10:00\n"
+        "  logbook note my_ship lot lot=R16 grade='RMG 380' density15_kg_m3=962 sulphur_percent=0.47\n"
+        "  logbook note my_ship event event=change_over lot=R16 engines=ME\n"
+        "  logbook note my_ship event event=instrument_exchanged instrument=fuel_meter_supply.ME_in"
         " closing=4815910 opening=120 --of ME"
     )
     shared.plant_folder(parser)

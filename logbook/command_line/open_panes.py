@@ -12,7 +12,7 @@ from logbook.command_line.environment import Environment, ExitCode, Refused
 def configure(parser: argparse.ArgumentParser) -> None:
     parser.description = "The panes of a plant: Watch, Ladder, Trend, Book. Works at 80x24, by keyboard alone."
     parser.epilog = (
-        "example:\n  logbook open plants/northern_star\n\n"
+        "example:\n  logbook open my_ship\n\n"
         "LOGBOOK_GLYPHS=ascii draws without line-drawing characters; LOGBOOK_PLAIN_DRIVER=1 repaints whole regions."
     )
     shared.plant_folder(parser)

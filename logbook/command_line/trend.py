@@ -14,7 +14,7 @@ def configure(parser: argparse.ArgumentParser) -> None:
         "The excess of an engine over its own reference, in segments between restorations: the call in words, a robust"
         " slope with its interval, excess fuel so far."
     )
-    parser.epilog = "example:\n  logbook trend plants/northern_star ME"
+    parser.epilog = "example:\n  logbook trend my_ship ME"
     shared.plant_folder(parser)
     parser.add_argument("engine", metavar="ENGINE")
     shared.as_json(parser)

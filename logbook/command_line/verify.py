@@ -12,7 +12,7 @@ from logbook.command_line.environment import Environment, ExitCode, Refused
 def configure(parser: argparse.ArgumentParser) -> None:
     parser.description = "Whether every entry of the book still is what was written, in the order it was written."
     parser.epilog = (
-        "example:\n  logbook verify plants/northern_star --seal 4f0c...e1\n\n"
+        "example:\n  logbook verify my_ship --seal 4f0c...e1\n\n"
         "Found: any alteration that does not recompute the chain, and anything before a seal kept elsewhere.\n"
         "Not found: a tail recomputed since the last such seal. Keep the printed digest of each month ashore."
     )

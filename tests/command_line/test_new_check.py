@@ -133,7 +133,7 @@ def test_help_has_a_worked_example(command: str, capsys: pytest.CaptureFixture[s
         run(command, "--help")
     assert left.value.code == 0
     said = capsys.readouterr().out
-    assert f"example:\n  logbook {command} plants/northern_star" in said
+    assert f"example:\n  logbook {command} my_ship" in said
     assert max(map(len, said.split("\n"))) <= 80 + len("usage: ")
 
 
