@@ -315,6 +315,8 @@ def _flag(
     flags.add("setting_changed", real & (count_within(events, {"setting_changed"}, spans.begin_h, spans.end_h) > 0))
     flags.add("soot_blowing_or_washing", real & (count_within(events, WASHES, spans.begin_h, spans.end_h) > 0))
     flags.add("weather", real & overlapping(weather_periods(events), spans.begin_h, spans.end_h))
+    # Trials are run with the bypass shut.
+    flags.add("bypass_position_differs", ran & ~np.isin(table.word("exhaust_bypass_state"), ("", "off", "shut", "0")))
     flags.add("unit_cut_out", real & overlapping(cut_out_periods(events), spans.begin_h, spans.end_h))
     instruments = {event.instrument for event in events if event.kind == "instrument_doubted"}
     for instrument in instruments:

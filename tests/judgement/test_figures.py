@@ -170,6 +170,13 @@ def test_what_happened_in_the_span_stands_against_it(event: dict[str, str], flag
     assert not row["comparable"]
 
 
+def test_an_open_bypass_is_not_the_state_of_the_trial() -> None:
+    row = last(pair(after(4, 4 * FUEL_H, exhaust_bypass_state="on")))
+    assert row["flags"] == "bypass_position_differs"
+    assert not row["comparable"]
+    assert last(pair(after(4, 4 * FUEL_H, exhaust_bypass_state="off")))["comparable"]
+
+
 def test_an_exchanged_meter_is_counted_through_and_not_compared() -> None:
     log = Log()
     log.lot(lower_calorific_value_mj_kg=42.7)
