@@ -7,7 +7,8 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import ArrayLike
 
-from logbook.physics.checks import Floats, floats
+from logbook.physics.checks import Floats
+from logbook.physics.series import series
 
 
 @dataclass(frozen=True, slots=True)
@@ -27,9 +28,9 @@ def cusum(values: ArrayLike, target: float, allowance: float, limit: float) -> C
 
     `target` mu0, `allowance` K and `limit` H in the unit of the values; K not below zero, H above it, else ValueError.
     """
-    (x,) = floats(values)
-    if allowance < 0 or limit <= 0:
-        raise ValueError("The allowance of a CUSUM is not below zero and its limit is above zero.")
+    (x,) = series("A CUSUM", values)
+    if not np.isfinite(target) or not allowance >= 0 or not limit > 0:
+        raise ValueError("A CUSUM needs a target, an allowance not below zero and a limit above zero.")
     high, low = np.zeros_like(x), np.zeros_like(x)
     up = down = 0.0
     for index, value in enumerate(x):
@@ -63,7 +64,12 @@ class ChangePoint:
     """two-segment sum of squares for a change after the 1st, 2nd ... last but one point"""
 
     def since(self, scatter: float, n_effective_ratio: float = 1.0) -> tuple[int, int]:
-        """First and last `after` whose sum of squares is within 3.84 s^2 n/n_eff of the least."""
+        """First and last `after` whose sum of squares is within 3.84 s^2 n/n_eff of the least.
+
+        `scatter` of one point, not below zero; `n_effective_ratio` n/n_eff, 1 or more; else ValueError.
+        """
+        if not scatter >= 0 or not n_effective_ratio >= 1:
+            raise ValueError("The interval of a change needs a scatter not below zero, and n/n_eff of 1 or more.")
         near = np.flatnonzero(self.costs <= self.costs.min() + 3.84 * scatter**2 * n_effective_ratio) + 1
         return int(near[0]), int(near[-1])
 
@@ -72,10 +78,8 @@ def change_point(values: ArrayLike) -> ChangePoint:
     """One change of the mean by least squares, with Pettitt's test. Needs 4 points, else ValueError."""
     from scipy.stats import rankdata
 
-    (y,) = floats(values)
+    (y,) = series("A change point", values, least=4)
     n = y.size
-    if n < 4:
-        raise ValueError(f"A change point needs at least 4 points; {n} were given.")
     # Centred first, so that the sums of squares do not lose their digits.
     d = y - y.mean()
     sums = np.cumsum(d)[:-1]

@@ -7,7 +7,9 @@ import pytest
 import ruptures
 from hypothesis import given, settings
 from hypothesis import strategies as st
+from scipy.signal import lfilter
 from scipy.stats import rankdata
+from statsmodels.datasets import nile
 
 from logbook.physics import detect
 
@@ -65,6 +67,25 @@ def test_cusum_calls_as_often_as_the_chain_says() -> None:
     assert values.size / calls == pytest.approx(168, rel=0.2)
 
 
+@pytest.mark.parametrize(
+    ("limit", "rho", "u_lot", "allowance", "between_calls"),
+    [(5, 0.0, 0.0, 0.5, 465), (5, 0.3, 0.0, 0.5, 97), (22, 0.0, 0.5, 0.5, 700), (5, 0.0, 0.5, 1.5, 3200)],
+)
+def test_false_calls_come_oftener_with_memory_and_with_lots(
+    limit: float, rho: float, u_lot: float, allowance: float, between_calls: float
+) -> None:
+    """All in units of s, both sides, lots of 30 points; calculated independently by simulation, +-10 %."""
+    rng = np.random.default_rng(6)
+    length, calls, points = 80 * between_calls, 0, 0
+    noise = lfilter([np.sqrt(1 - rho**2)], [1, -rho], rng.normal(size=length + 100))[100:]
+    y = noise + np.repeat(rng.normal(0, u_lot, length // 30 + 1), 30)[:length]
+    while points < length:
+        found = detect.cusum(y[points : points + 3 * between_calls], 0, allowance, limit)
+        calls += found.first_signal is not None
+        points += 3 * between_calls if found.first_signal is None else found.first_signal + 1
+    assert length / calls == pytest.approx(between_calls, rel=0.3)
+
+
 def test_change_point() -> None:
     """Calculated independently with ruptures, scipy and numpy."""
     found = detect.change_point(STEP)
@@ -116,6 +137,28 @@ def test_pettitt_from_its_definition(values: list[int]) -> None:
     assert 0 <= found.p <= 1
 
 
+def test_the_nile_at_aswan_fell_in_1898() -> None:
+    """Annual flow 1871-1970 (data of statsmodels): the change after 1898 is published by Cobb, Biometrika 65 (1978).
+
+    The split agrees with ruptures; cumulative sums against the first twenty years date it to the same year, +-1.
+    """
+    data = nile.load_pandas().data
+    flow, year = data["volume"].to_numpy(float), data["year"].to_numpy(int)
+    found = detect.change_point(flow)
+    assert year[found.after - 1] == 1898
+    assert ruptures.Dynp(model="l2", min_size=1, jump=1).fit(flow).predict(n_bkps=1) == [found.after, 100]
+    assert found.p < 1e-5
+    scatter = float(np.sqrt(found.sum_of_squares / 98))
+    first, last = found.since(scatter)
+    assert first <= found.after <= last
+    assert last - first <= 5
+    clean = flow[:20]
+    s = float(clean.std(ddof=1))
+    signal = detect.cusum(flow, float(clean.mean()), 0.5 * s, 5 * s)
+    assert signal.since is not None
+    assert abs(int(year[signal.since]) - 1899) <= 1
+
+
 def test_noise_alone_is_not_accepted_as_a_change() -> None:
     noise = np.random.default_rng(5).normal(size=(200, 30))
     accepted = sum(detect.change_point(row).p < 0.05 for row in noise)
@@ -126,7 +169,14 @@ def test_noise_alone_is_not_accepted_as_a_change() -> None:
     ("call", "sentence"),
     [
         (lambda: detect.cusum([1, 2], 0, -1, 5), "not below zero"),
-        (lambda: detect.cusum([1, 2], 0, 1, 0), "limit is above zero"),
+        (lambda: detect.cusum([1, 2], 0, 1, 0), "limit above zero"),
+        (lambda: detect.cusum([1, 2], np.nan, 1, 1), "needs a target"),
+        # max(0, NaN) is 0: the sum would begin anew without a word.
+        (lambda: detect.cusum([1, np.nan, 5, 5], 0, 1, 3), "leave out what was not read"),
+        (lambda: detect.cusum([], 0, 1, 3), "at least 1 point; 0 were given"),
+        (lambda: detect.change_point([1, 2, np.nan, 4]), "leave out what was not read"),
+        (lambda: detect.change_point(STEP).since(np.nan), "a scatter not below zero"),
+        (lambda: detect.change_point(STEP).since(1.0, 0.5), "1 or more"),
         (lambda: detect.change_point([1, 2, 3]), "at least 4 points; 3 were given"),
     ],
 )
