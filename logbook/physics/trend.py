@@ -7,7 +7,8 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import ArrayLike
 
-from logbook.physics.checks import Floats, floats
+from logbook.physics.checks import Floats
+from logbook.physics.series import series
 from logbook.physics.uncertainty import autocorrelation, effective_number
 
 LEAST_POINTS = 8
@@ -30,13 +31,16 @@ def _kendall_sum(y: Floats) -> int:
 
 
 def mann_kendall(values: ArrayLike, n_effective: float | None = None) -> MannKendall:
-    """Mann-Kendall test. `n_effective`: variance times n/n_eff for autocorrelated points. Needs 3 points."""
+    """Mann-Kendall test, ties allowed. `n_effective`: variance times n/n_eff for autocorrelated points.
+
+    Needs 3 points and n_eff above 0, at most n, else ValueError.
+    """
     from scipy.stats import norm
 
-    (y,) = floats(values)
+    (y,) = series("A Mann-Kendall test", values, least=3)
     n = y.size
-    if n < 3:
-        raise ValueError(f"A Mann-Kendall test needs at least 3 points; {n} were given.")
+    if n_effective is not None and not 0 < n_effective <= n:
+        raise ValueError("The effective number of points is above 0 and not above their number.")
     s = _kendall_sum(y)
     _, ties = np.unique(y, return_counts=True)
     variance = (n * (n - 1) * (2 * n + 5) - float((ties * (ties - 1) * (2 * ties + 5)).sum())) / 18
@@ -63,15 +67,11 @@ def theil_sen(
     """Median of all pair slopes with Sen's interval.
 
     values (n,), times (n,) or 0, 1, 2 ...; pairs at the same time are left out. Needs 8 points, else ValueError.
+    `n_effective` widens the interval as in `mann_kendall`; an end beyond the steepest pair is infinite.
     """
     from scipy.stats import norm
 
-    (y,) = floats(values)
-    x = np.arange(y.size, dtype=float) if times is None else np.asarray(times, float)
-    if y.size < LEAST_POINTS:
-        raise ValueError(f"A trend needs at least {LEAST_POINTS} points; {y.size} were given.")
-    if x.shape != y.shape:
-        raise ValueError("A trend needs as many times as values.")
+    y, x = series("A trend", values, np.arange(np.size(values)) if times is None else times, least=LEAST_POINTS)
     i, j = np.triu_indices(y.size, 1)
     dx = x[j] - x[i]
     slopes = np.sort(((y[j] - y[i])[dx != 0]) / dx[dx != 0])
@@ -90,24 +90,47 @@ def theil_sen(
 
 @dataclass(frozen=True, slots=True)
 class Ewma:
+    """The average after each point (n,), the half width of its limits there (n,) [both in the unit of the values]."""
+
     values: Floats
+    half_width: Floats
     low: float
+    """limits at the last point"""
     high: float
     first_signal: int | None
     """index of the first value beyond the limits"""
 
 
-def ewma(values: ArrayLike, target: float, scatter: float, weight: float = 0.3, k: float = 3.0) -> Ewma:
-    """Exponentially weighted moving average with its steady limits."""
-    (y,) = floats(values)
-    found = np.empty_like(y)
-    e = target
-    for index, value in enumerate(y):
-        e = weight * value + (1 - weight) * e
-        found[index] = e
-    half = k * scatter * float(np.sqrt(weight / (2 - weight)))
+def ewma_weight(spacing: ArrayLike, time_constant: float) -> Floats:
+    """Weight of points so far apart: 1 - exp(-dt/tau), both in one unit. ValueError unless above zero."""
+    apart = np.asarray(spacing, float)
+    if not np.all(apart > 0) or not time_constant > 0:
+        raise ValueError("Spacing and time constant of a moving average are above zero.")
+    weight: Floats = -np.expm1(-apart / time_constant)
+    return weight
+
+
+def ewma(values: ArrayLike, target: float, scatter: float, weight: ArrayLike = 0.3, k: float = 3.0) -> Ewma:
+    """Exponentially weighted moving average with limits target +- k times its own scatter.
+
+    `weight` one number, or one a point (n,) for uneven spacing. The limits begin at k s weight and, with one weight,
+    settle at k s sqrt[weight/(2 - weight)]. ValueError: scatter or k not above zero, weight not above 0 up to 1.
+    """
+    (y,) = series("A moving average", values)
+    if np.ndim(weight) and np.shape(weight) != y.shape:
+        raise ValueError("A moving average needs one weight, or one for every point.")
+    weights = np.broadcast_to(np.asarray(weight, float), y.shape)
+    if not np.all((weights > 0) & (weights <= 1)) or not (scatter > 0 and k > 0):
+        raise ValueError("A moving average needs a weight above 0 and up to 1, and a scatter above zero.")
+    found, half = np.empty_like(y), np.empty_like(y)
+    average, variance = target, 0.0
+    for index, (value, lam) in enumerate(zip(y, weights, strict=True)):
+        average = lam * value + (1 - lam) * average
+        variance = (lam * scatter) ** 2 + (1 - lam) ** 2 * variance
+        found[index], half[index] = average, k * np.sqrt(variance)
     beyond = np.flatnonzero(np.abs(found - target) > half)
-    return Ewma(found, target - half, target + half, int(beyond[0]) if beyond.size else None)
+    last = float(half[-1])
+    return Ewma(found, half, target - last, target + last, int(beyond[0]) if beyond.size else None)
 
 
 @dataclass(frozen=True, slots=True)
@@ -126,9 +149,9 @@ def shape_test(times: ArrayLike, loads: ArrayLike, excess: ArrayLike, least_effe
 
     Needs 12 points at different loads, else ValueError.
     """
-    x, load, y = floats(times, loads, excess)
-    if y.size < SHAPE_LEAST_POINTS or np.ptp(load) == 0:
-        raise ValueError(f"The test of the curve's shape needs {SHAPE_LEAST_POINTS} points at different loads.")
+    x, load, y = series("The test of the curve's shape", times, loads, excess, least=SHAPE_LEAST_POINTS)
+    if np.ptp(load) == 0:
+        raise ValueError("The test of the curve's shape needs points at different loads.")
     design = np.column_stack([np.ones_like(x), x - x.mean(), load - load.mean()])
     c, *_ = np.linalg.lstsq(design, y, rcond=None)
     residual = y - design @ c

@@ -65,6 +65,54 @@ def test_theil_sen_agrees_with_scipy(values: list[int], spacing: float) -> None:
     assert found.intercept == pytest.approx(theirs.intercept)
 
 
+NUMBERS = st.lists(st.integers(-500, 500), min_size=8, max_size=30)
+
+
+@settings(max_examples=40)
+@given(NUMBERS, st.floats(1.0, 30.0))
+def test_interval_contains_the_slope_and_widens_with_fewer_independent_points(values: list[int], share: float) -> None:
+    n = len(values)
+    whole = trend.theil_sen(values)
+    fewer = trend.theil_sen(values, n_effective=max(n / share, 0.5))
+    assert fewer.low <= whole.low <= whole.slope <= whole.high <= fewer.high
+    assert fewer.slope == whole.slope
+
+
+@settings(max_examples=40)
+@given(NUMBERS, st.floats(1e-3, 1e3), st.floats(1e-3, 1e3), st.floats(-1e3, 1e3), st.floats(-10, 10))
+def test_slope_follows_its_units(values: list[int], unit: float, time_unit: float, shift: float, tilt: float) -> None:
+    """Scaled, shifted and tilted data scale, leave and tilt the slope and its interval; mirrored data mirror them."""
+    y, x = np.array(values, float), np.arange(len(values), dtype=float)
+    plain = np.array([(fit := trend.theil_sen(y, x)).slope, fit.low, fit.high])
+    found = trend.theil_sen(unit * y + shift, time_unit * x)
+    size = unit / time_unit
+    assert [found.slope, found.low, found.high] == pytest.approx(plain * size, rel=1e-9, abs=1e-9 * size * 1e3 + 1e-9)
+    mirrored = trend.theil_sen(-y, x)
+    assert [mirrored.slope, mirrored.high, mirrored.low] == pytest.approx(-plain)
+    # A tilt may break ties, and with them the variance: the slope alone is compared.
+    assert trend.theil_sen(y + tilt * x, x).slope == pytest.approx(plain[0] + tilt, abs=1e-9)
+
+
+@pytest.mark.parametrize("n", [8, 14])
+def test_interval_holds_the_true_slope_as_often_as_it_says(n: int) -> None:
+    """1000 series of white noise about a slope of 0.02: 95 %, less at most three standard errors of the count."""
+    rng = np.random.default_rng(n)
+    fits = [trend.theil_sen(row + 0.02 * np.arange(n)) for row in rng.normal(size=(1000, n))]
+    assert np.mean([fit.low <= 0.02 <= fit.high for fit in fits]) >= 0.93
+
+
+def test_interval_without_an_end_where_too_little_is_known() -> None:
+    found = trend.theil_sen(BY_HAND, n_effective=1.0)
+    assert (found.low, found.high) == (-np.inf, np.inf)
+
+
+def test_pairs_at_the_same_time_are_left_out() -> None:
+    """As scipy's theilslopes, which leaves them out, too."""
+    times = np.repeat(np.arange(7), 2)
+    found = trend.theil_sen(BY_HAND, times)
+    assert found.slope == pytest.approx(stats.theilslopes(BY_HAND, times).slope)
+
+
 def test_a_single_wild_reading_does_not_move_the_slope() -> None:
     times = np.arange(20) * 24.0
     values = 0.01 * times
@@ -102,6 +150,24 @@ def test_ewma() -> None:
     )  # fmt: skip
     assert (found.high, found.low) == pytest.approx((52.5884, 47.4116), abs=5e-5)
     assert found.first_signal is None
+    early = np.sqrt(1 - 0.7 ** (2 * np.arange(1, 21)))
+    assert found.half_width == pytest.approx(2.5884 * early, rel=2e-5)
+
+
+def test_ewma_limits_by_simulation() -> None:
+    """Scatter of the average after each of five unevenly spaced points, 20 000 invented series."""
+    weights = trend.ewma_weight([24, 24, 120, 8, 48], 200)
+    rows = np.random.default_rng(8).normal(0, 2.0, (20_000, 5))
+    average = np.zeros(20_000)
+    half = trend.ewma(rows[0], 0.0, 2.0, weights, k=1.0).half_width
+    for point in range(5):
+        average = (1 - weights[point]) * average + weights[point] * rows[:, point]
+        assert average.std() == pytest.approx(half[point], rel=0.03)
+
+
+def test_early_limits_see_a_large_first_step() -> None:
+    """2.0 beyond k s weight 1.848, and well within the settled limit 2.588; calculated independently by arithmetic."""
+    assert trend.ewma([50 + 2.0 / 0.3], 50, 2.0539, 0.3).first_signal == 0
 
 
 def test_ewma_signals_a_shift() -> None:
@@ -112,8 +178,10 @@ def test_ewma_signals_a_shift() -> None:
 
 def test_ewma_weight_of_uneven_spacing() -> None:
     """24 h apart with a time constant of 200 h: 0.113080; one step of a unit jump shows it."""
-    weight = 1 - np.exp(-24 / 200)
+    weight = trend.ewma_weight(24, 200)
     assert weight == pytest.approx(0.113080, abs=5e-7)
+    # Two steps of 12 h forget as much as one of 24 h.
+    assert (1 - trend.ewma_weight(12, 200)) ** 2 == pytest.approx(1 - weight)
     assert trend.ewma([1.0], 0.0, 1.0, weight).values[0] == pytest.approx(0.113080, abs=5e-7)
 
 
@@ -154,8 +222,20 @@ def test_a_small_effect_of_load_is_not_called_a_difference_of_shape(scale: float
     ("call", "sentence"),
     [
         (lambda: trend.mann_kendall([1, 2]), "at least 3 points; 2 were given"),
-        (lambda: trend.theil_sen([1] * 7), "at least 8 points; 7 were given"),
-        (lambda: trend.theil_sen([1] * 8, [1] * 9), "as many times as values"),
+        (lambda: trend.theil_sen([1] * 7), "A trend needs at least 8 points; 7 were given"),
+        (lambda: trend.theil_sen([1] * 8, [1] * 9), "of one length; 8 and 9 were given"),
+        (lambda: trend.theil_sen([1, 2, np.nan, 4, 5, 6, 7, 8]), "leave out what was not read"),
+        (lambda: trend.theil_sen(5.0), "lists of numbers"),
+        (lambda: trend.theil_sen(range(9), n_effective=0), "effective number of points is above 0"),
+        (lambda: trend.mann_kendall(range(9), n_effective=10), "not above their number"),
+        (lambda: trend.mann_kendall([1, np.nan, 3]), "leave out what was not read"),
+        (lambda: trend.ewma([], 0, 1), "at least 1 point; 0 were given"),
+        (lambda: trend.ewma([1, np.nan], 0, 1), "leave out what was not read"),
+        (lambda: trend.ewma([1, 2], 0, 0), "scatter above zero"),
+        (lambda: trend.ewma([1, 2], 0, 1, 1.5), "weight above 0 and up to 1"),
+        (lambda: trend.ewma([1, 2], 0, 1, [0.3, 0.3, 0.3]), "one for every point"),
+        (lambda: trend.ewma_weight(0, 200), "above zero"),
+        (lambda: trend.shape_test(range(12), range(12), [np.nan] * 12), "leave out what was not read"),
         (lambda: trend.theil_sen([1] * 8, [1] * 8), "different times"),
         (lambda: trend.shape_test(range(12), [75] * 12, range(12)), "different loads"),
         (lambda: trend.shape_test(range(11), range(11), range(11)), "12 points"),
