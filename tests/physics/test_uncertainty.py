@@ -7,6 +7,7 @@ import numpy as np
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
+from scipy import stats
 from uncertainties import ufloat, umath
 
 from logbook.physics import uncertainty
@@ -29,6 +30,13 @@ def test_effective_degrees_of_the_end_gauge() -> None:
     assert int(found) == 16
     parts = [GTC.ureal(0, component, nu) for component, nu in zip(u, degrees, strict=True)]
     assert found == pytest.approx(GTC.dof(sum(parts)), rel=1e-6)
+
+
+def test_effective_degrees_of_components_known_for_certain() -> None:
+    """A component of infinite degrees adds to u_c only; GTC calculates the same."""
+    assert uncertainty.effective_degrees([1.0, 2.0], [np.inf, np.inf]) == np.inf
+    found = uncertainty.effective_degrees([1.0, 2.0], [5, np.inf])
+    assert found == pytest.approx(GTC.dof(GTC.ureal(0, 1, 5) + GTC.ureal(0, 2)))
 
 
 def test_efficiency_of_three_readings() -> None:
@@ -82,6 +90,16 @@ def test_supply_less_return(ratio: float, at: tuple[float, float, float], column
     """Meters of 0.2, 0.5 and 1 %; calculated independently by arithmetic."""
     accuracy = (0.2, 0.5, 1.0)[column]
     assert uncertainty.supply_less_return(accuracy, ratio) == pytest.approx(at[column], abs=5.1e-3)
+
+
+@pytest.mark.parametrize(("ratio", "at"), [(2, (0.6, 1.5, 3)), (3, (1.0, 2.5, 5)), (4, (1.4, 3.5, 7)),
+                                           (6, (2.2, 5.5, 11))])  # fmt: skip
+def test_supply_less_return_at_worst(ratio: float, at: tuple[float, float, float]) -> None:
+    """Meters of 0.2, 0.5 and 1 % wrong in opposite directions; calculated independently by arithmetic."""
+    accuracy = np.array([0.2, 0.5, 1.0])
+    assert uncertainty.supply_less_return_worst(accuracy, ratio) == pytest.approx(at)
+    high, low = ratio * (1 + accuracy / 100), (ratio - 1) * (1 - accuracy / 100)
+    assert 100 * (high - low - 1) == pytest.approx(at)
 
 
 @settings(max_examples=40)
@@ -151,6 +169,33 @@ def test_fewer_independent_points_widen_the_slope() -> None:
     assert uncertainty.slope(X_60_DAYS, np.ones(60), 0.30, 0, n_effective=15) == pytest.approx(2 * 0.09318, abs=2e-5)
 
 
+@pytest.mark.parametrize(
+    ("before", "after", "lots"),
+    [
+        ("AAA", "AAA", 0.0),
+        ("AABB", "CCDD", 0.5 + 0.5),
+        ("AABBCC", "DDDD", 1 / 3 + 1),
+        # One lot on both sides: its error cancels as far as its shares do.
+        ("AABB", "BBCC", 0.25 + 0.25),
+    ],
+)
+def test_difference_of_two_windows(before: str, after: str, lots: float) -> None:
+    """u_rep^2 + u_lot^2 (1/L_before + 1/L_after) for lots apart; calculated independently by arithmetic."""
+    found = uncertainty.window_difference(0.1, list(before), list(after), 0.25)
+    assert found == pytest.approx(np.sqrt(0.1**2 + 0.25**2 * lots))
+
+
+def test_difference_of_two_windows_by_simulation() -> None:
+    """20 000 invented pairs of windows with unequal lots, one of them on both sides."""
+    rng = np.random.default_rng(4)
+    before, after = np.array([0, 0, 0, 1, 2]), np.array([2, 2, 3, 3, 3, 3])
+    errors = rng.normal(0, 0.25, (20_000, 4))
+    noise = rng.normal(0, 0.30, (20_000, 11))
+    d = (errors[:, after] + noise[:, 5:]).mean(axis=1) - (errors[:, before] + noise[:, :5]).mean(axis=1)
+    u_rep = 0.30 * np.sqrt(1 / 5 + 1 / 6)
+    assert uncertainty.window_difference(u_rep, before, after, 0.25) == pytest.approx(d.std(), rel=0.02)
+
+
 def test_four_witnesses_that_agree() -> None:
     """Calculated independently with scipy."""
     values = np.log([9800, 9980, 10010, 9960])
@@ -195,6 +240,19 @@ def test_two_estimates_accuse_nobody() -> None:
     assert found.suspect is None
 
 
+def test_two_readings_in_a_row_settle_what_one_only_suspects() -> None:
+    """chi2 and degrees add: twice 7.290 with 6 degrees; calculated independently with scipy."""
+    found = uncertainty.agreement(SUSPECTED, FOUR_U)
+    assert found.p == pytest.approx(stats.chi2.sf(found.chi2, 3))
+    assert stats.chi2.sf(2 * found.chi2, 6) < 0.05
+
+
+def test_one_very_sure_witness_keeps_its_residual() -> None:
+    """z of a witness 10^9 times surer than the other: both residuals are the difference over its uncertainty."""
+    found = uncertainty.agreement([0.0, 1.0], [1e-9, 1.0])
+    assert found.z == pytest.approx([-1.0, 1.0])
+
+
 def test_weighted_mean_has_the_least_uncertainty_uncertainties_can_find() -> None:
     u = np.array([0.015, 0.02, 0.025, 0.03])
     parts = [ufloat(y, s) for y, s in zip(SUSPECTED, u, strict=True)]
@@ -233,8 +291,31 @@ def test_of_excess_agrees_with_uncertainties(ref: float, a: float, fuel: float, 
         (lambda: uncertainty.agreement([1.0], [0.1]), "at least two values"),
         (lambda: uncertainty.agreement([1.0, 2.0], [0.1]), "an uncertainty for each"),
         (lambda: uncertainty.agreement([1.0, 2.0], [0.1, 0.0]), "above zero"),
+        (lambda: uncertainty.agreement([1.0, np.nan], [0.1, 0.1]), "leave out the witness"),
+        (lambda: uncertainty.repeatability([1, np.nan, 3, 4]), "leave out what was not read"),
+        (lambda: uncertainty.repeatability([1, 2, 3], [5, 5, 5]), "different times"),
+        (lambda: uncertainty.repeatability([1, 2, 3], [1, 2]), "of one length; 3 and 2 were given"),
+        (lambda: uncertainty.autocorrelation([1, np.nan, 3]), "leave out what was not read"),
+        (lambda: uncertainty.of_digits(np.nan, 2), "finite number"),
+        (lambda: uncertainty.of_full_scale(1.0, 16.0, 0.0), "reading of zero has no percentage"),
+        (lambda: uncertainty.supply_less_return(0.5, 0.9), "1 or more"),
+        (lambda: uncertainty.supply_less_return_worst(0.5, 0.9), "1 or more"),
+        (lambda: uncertainty.effective_degrees([1, 2], [0, 5]), "degrees above zero"),
+        (lambda: uncertainty.effective_degrees([0, 0], [1, 5]), "not all of them zero"),
+        (lambda: uncertainty.effective_degrees([1, 2], [5]), "for each its degrees"),
+        (lambda: uncertainty.effective_number(40, 1.0), "under 1"),
+        (lambda: uncertainty.effective_number(0, 0.2), "needs points"),
+        (lambda: uncertainty.slope([1, 1], ["A", "A"], 0.1, 0.1), "different times"),
+        (lambda: uncertainty.slope([1, 2, 3], ["A", "A"], 0.1, 0.1), "the lot of every point"),
+        (lambda: uncertainty.slope([1], ["A"], 0.1, 0.1), "at least 2 points; 1 was given"),
+        (lambda: uncertainty.window_difference(0.1, [], ["A"], 0.1), "at least one point in each"),
     ],
 )
 def test_what_cannot_be_is_refused_with_what_to_do(call: Callable[[], object], sentence: str) -> None:
     with pytest.raises(ValueError, match=sentence):
         call()
+
+
+def test_in_an_array_only_the_element_that_cannot_be_is_lost() -> None:
+    assert np.isnan(uncertainty.of_full_scale(1.0, 16.0, [4.0, 0.0])).tolist() == [False, True]
+    assert np.isnan(uncertainty.supply_less_return(0.5, [2.0, 0.5])).tolist() == [False, True]
