@@ -6,22 +6,25 @@ b = B0 x F_fuel x F_ambient x F_load x F_instrument x F_engine. Log-mean Divisia
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import Any
 
 import numpy as np
 from numpy.typing import ArrayLike
 
-from logbook.physics.checks import Floats, floats
+from logbook.physics.checks import Floats, floats, good, shaped
+from logbook.physics.series import series
 
 TERMS = ("fuel", "ambient", "load", "instrument", "engine")
 
 
-def log_mean(x: ArrayLike, y: ArrayLike) -> Floats:
-    """(x - y)/ln(x/y), and x where they are equal; both above zero."""
-    a, b = (np.asarray(value, float) for value in (x, y))
-    ratio = np.log(a / b)
-    close = np.abs(ratio) < 1e-9
-    result: Floats = np.where(close, (a + b) / 2, (a - b) / np.where(close, 1.0, ratio))
-    return result
+def log_mean(x: ArrayLike, y: ArrayLike) -> Any:
+    """(x - y)/ln(x/y), and x where they are equal; both above zero, else ValueError (NaN in an array)."""
+    a, b = floats(x, y)
+    holds = good((a > 0) & (b > 0), "A logarithmic mean needs values above zero.", x, y)
+    low, high = np.where(holds, np.minimum(a, b), np.nan), np.where(holds, np.maximum(a, b), np.nan)
+    rise = high - low
+    # log1p keeps its digits where the two nearly agree.
+    return shaped(np.where(rise == 0, low, rise / np.where(rise == 0, 1.0, np.log1p(rise / low))))
 
 
 @dataclass(frozen=True)
@@ -42,10 +45,15 @@ def factors(
     instrument: ArrayLike = 1.0,
 ) -> Floats:
     """The five factors (5, ...): `lcv_ratio` LCV_ref/LCV, `ambient` a, `load` b_ref(load)/B0,
-    `instrument` 1 + error."""
-    b, b0, fuel, a, share, meter = floats(consumption, reference, lcv_ratio, ambient, load, instrument)
+    `instrument` 1 + error. All above zero, else ValueError (NaN for that element of an array)."""
+    given = (consumption, reference, lcv_ratio, ambient, load, instrument)
+    arrays = np.broadcast_arrays(*floats(*given))
+    holds = good(
+        np.all([one > 0 for one in arrays], axis=0), "An account needs consumption and factors above zero.", *given
+    )
+    b, b0, fuel, a, share, meter = (np.where(holds, one, np.nan) for one in arrays)
     engine = b / (b0 * fuel * a * share * meter)
-    return np.stack(np.broadcast_arrays(fuel, a, share, meter, engine))
+    return np.stack([fuel, a, share, meter, engine])
 
 
 def against_reference(
@@ -61,9 +69,16 @@ def against_reference(
 
 
 def of_period(accounts: Account, energy: ArrayLike, fuel_energy: ArrayLike, reference: float) -> Account:
-    """Account of a period from those of its readings: weights energy (consumption) and fuel energy (efficiency)."""
-    e_kwh, q = floats(energy, fuel_energy)
-    c = (accounts.consumption * e_kwh).sum(axis=1) / e_kwh.sum()
+    """Account of a period from those of its readings (5, n): weights energy (consumption), fuel energy (efficiency).
+
+    `energy`, `fuel_energy` (n,), any unit, not below zero and not all zero; compared readings only, else ValueError.
+    """
+    weight, q = series("The account of a period", energy, fuel_energy)
+    if accounts.consumption.shape != (len(TERMS), weight.size) or not np.isfinite(accounts.consumption).all():
+        raise ValueError("The account of a period needs an account of every reading: leave out what is not compared.")
+    if weight.min() < 0 or q.min() < 0 or weight.sum() == 0 or q.sum() == 0:
+        raise ValueError("The account of a period needs energy and fuel energy above zero.")
+    c = (accounts.consumption * weight).sum(axis=1) / weight.sum()
     e = (accounts.efficiency * q).sum(axis=1) / q.sum()
     pooled = reference + float(c.sum())
     return Account(c, e, np.exp(c / log_mean(pooled, reference)))

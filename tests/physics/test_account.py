@@ -1,5 +1,7 @@
 """The account of a change: every check calculated independently by arithmetic, and exact sums as a property."""
 
+from collections.abc import Callable
+
 import numpy as np
 import pytest
 from hypothesis import given, settings
@@ -117,12 +119,18 @@ def test_terms_sum_exactly(
 def test_log_mean_is_symmetric_and_between_the_two_means(x: float, y: float) -> None:
     found = float(account.log_mean(x, y))
     assert found == pytest.approx(float(account.log_mean(y, x)))
-    assert np.sqrt(x * y) * (1 - 1e-6) <= found <= (x + y) / 2 * (1 + 1e-6)
+    assert np.sqrt(x * y) * (1 - 1e-12) <= found <= (x + y) / 2 * (1 + 1e-12)
 
 
 def test_log_mean_of_equal_values() -> None:
     assert account.log_mean(170.0, 170.0) == 170.0
     assert account.log_mean(170.0, 170.0 * (1 + 1e-10)) == pytest.approx(170.0)
+
+
+@pytest.mark.parametrize("apart", [1e-12, 1e-9, 1e-8, 1e-6])
+def test_log_mean_keeps_its_digits_where_the_two_nearly_agree(apart: float) -> None:
+    """Against its series, arithmetic mean less d^2/12 for values m -+ d/2 around 1; rel 1e-14."""
+    assert account.log_mean(1 - apart / 2, 1 + apart / 2) == pytest.approx(1 - apart**2 / 12, rel=1e-14)
 
 
 def test_one_meter_for_two_sets() -> None:
@@ -141,3 +149,33 @@ def test_one_meter_for_two_sets() -> None:
     # The group's account against its own reference has the engine's term alone, once the fuel is taken out.
     five = account.factors(consumption, reference, LCV_REF / 41.0, 1.0, 1.0)
     assert five[-1] == pytest.approx(1 + deviation)
+
+
+def test_a_reading_that_cannot_be_has_no_account_and_leaves_the_others_theirs() -> None:
+    five = account.factors([180.0, -1.0], B0, 1.0, 1.0, 1.0)
+    assert five[:, 0] == pytest.approx([1, 1, 1, 1, 180 / 169])
+    assert np.isnan(five[:, 1]).all()
+    assert np.isnan(account.log_mean([1.0, 0.0], 2.0)).tolist() == [False, True]
+
+
+def _of_period(energy: list[float], fuel_energy: list[float], consumption: tuple[float, float] = (180, 175)) -> object:
+    b = np.array(consumption, float)
+    single = account.against_reference(b, B0, account.factors(b, B0, 1.0, 1.0, 1.0), 3600 / (b * LCV_REF), ETA_0)
+    return account.of_period(single, energy, fuel_energy, B0)
+
+
+@pytest.mark.parametrize(
+    ("call", "sentence"),
+    [
+        (lambda: account.log_mean(0.0, 170.0), "values above zero"),
+        (lambda: account.factors(180.0, B0, 1.0, 0.0, 1.0), "consumption and factors above zero"),
+        (lambda: _of_period([0, 0], [1, 1]), "energy and fuel energy above zero"),
+        (lambda: _of_period([1, 1], [-1, 2]), "energy and fuel energy above zero"),
+        (lambda: _of_period([1, 1, 1], [1, 1, 1]), "an account of every reading"),
+        (lambda: _of_period([1, 1], [1, 1], (180, np.nan)), "leave out what is not compared"),
+        (lambda: _of_period([1, 1], [1]), "of one length; 2 and 1 were given"),
+    ],
+)
+def test_what_cannot_be_is_refused_with_what_to_do(call: Callable[[], object], sentence: str) -> None:
+    with pytest.raises(ValueError, match=sentence):
+        call()
