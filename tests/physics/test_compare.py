@@ -94,6 +94,12 @@ def test_at_least_one_more_reading_is_asked_for() -> None:
     [
         (lambda: compare.welch([1, 2], [1, 2, 3]), "at least 3 readings a side; 2 and 3 were given"),
         (lambda: compare.welch([1, 1, 1], [2, 2, 2]), "do not scatter"),
+        (lambda: compare.welch([1, 2, np.nan], [1, 2, 3]), "leave out what was not read"),
+        (lambda: compare.welch([], [1, 2, 3]), "0 and 3 were given"),
+        (lambda: compare.readings_needed(np.nan, 1), "above zero"),
+        (lambda: compare.readings_needed(1, np.nan), "not zero"),
+        (lambda: compare.readings_needed(1, 1, confidence=1.0), "between 0 and 1"),
+        (lambda: compare.readings_needed(1, 1, power=0.0), "between 0 and 1"),
         (lambda: compare.readings_needed(0, 1), "above zero"),
         (lambda: compare.readings_needed(1, 0), "not zero"),
     ],
