@@ -10,6 +10,7 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from logbook.physics.checks import floats
+from logbook.physics.series import series
 from logbook.physics.trend import TheilSen
 
 
@@ -26,7 +27,7 @@ class Forecast:
 
 def forecast(values: ArrayLike, times: ArrayLike, trend: TheilSen, level: float) -> Forecast | None:
     """Crossing of the user's own economy level from the pivot of medians; None where the trend does not go there."""
-    y, x = floats(values, times)
+    y, x = series("A forecast", values, times)
     x0, y0 = float(np.median(x)), float(np.median(y))
     rise = level - y0
     if rise * trend.slope <= 0:
@@ -40,6 +41,8 @@ def forecast(values: ArrayLike, times: ArrayLike, trend: TheilSen, level: float)
 
 @dataclass(frozen=True, slots=True)
 class CleaningInterval:
+    """The interval of least cost [days] and what it costs [currency/day]."""
+
     days: float
     cost_per_day: float
 
@@ -50,7 +53,7 @@ def cleaning_interval(cost: float, growth_per_day2: float) -> CleaningInterval:
     `cost` of one cleaning with off-hire; `growth_per_day2`: by how much the daily penalty grows each day, same
     currency. Full restoration; with a floor T* stays. Never beyond the maker's interval. ValueError unless above zero.
     """
-    if cost <= 0 or growth_per_day2 <= 0:
+    if not cost > 0 or not growth_per_day2 > 0:
         raise ValueError("Cost and growth must be above zero: without growth no cleaning pays.")
     return CleaningInterval(sqrt(2 * cost / growth_per_day2), sqrt(2 * cost * growth_per_day2))
 
@@ -59,3 +62,28 @@ def excess_fuel(consumption_kg_j: ArrayLike, expected_kg_j: ArrayLike, energy_j:
     """sum (b - b_expected) E over compared readings [kg]; negative parts stay. Expected: b_ref a LCV_ref/LCV."""
     b, expected, e = floats(consumption_kg_j, expected_kg_j, energy_j)
     return float(np.sum((b - expected) * e))
+
+
+@dataclass(frozen=True, slots=True)
+class ExcessCost:
+    """Excess fuel and its standard uncertainty [kg], CO2 [kg] and money [currency]; below zero: less than expected."""
+
+    fuel_kg: float
+    u_fuel_kg: float
+    co2_kg: float
+    money: float
+
+    @property
+    def differs_from_zero(self) -> bool:
+        """The excess is larger than its expanded uncertainty (twice the standard one)."""
+        return abs(self.fuel_kg) > 2 * self.u_fuel_kg
+
+
+def excess_cost(fuel_kg: float, u_fuel_kg: float, carbon_factor: float, price_per_kg: float) -> ExcessCost:
+    """What excess fuel means in CO2 (`carbon_factor` kg/kg of fuel) and money (`price_per_kg` currency/kg).
+
+    `u_fuel_kg` of all three kinds and the reference's. ValueError: an uncertainty, factor or price below zero.
+    """
+    if not (u_fuel_kg >= 0 and carbon_factor >= 0 and price_per_kg >= 0):
+        raise ValueError("Uncertainty, carbon factor and price of excess fuel are not below zero.")
+    return ExcessCost(fuel_kg, u_fuel_kg, fuel_kg * carbon_factor, fuel_kg * price_per_kg)

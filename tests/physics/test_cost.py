@@ -79,13 +79,22 @@ def test_excess_fuel() -> None:
     """3.191953 g/kWh over 4200 MWh: 13.406 t, 41.747 t CO2 with 3.114; calculated independently by arithmetic."""
     found = cost.excess_fuel(172.191953 * KG_J_PER_G_KWH, 169.0 * KG_J_PER_G_KWH, 4.2e6 * J_PER_KWH)
     assert found / 1e3 == pytest.approx(13.406, abs=1e-3)
-    assert found / 1e3 * 3.114 == pytest.approx(41.747, abs=1e-3)
+    whole = cost.excess_cost(found, 2000.0, 3.114, 0.6)
+    assert whole.co2_kg / 1e3 == pytest.approx(41.747, abs=1e-3)
+    assert whole.money == pytest.approx(0.6 * 13406, rel=1e-4)
+    assert whole.fuel_kg == found
 
 
 def test_calibration_of_the_reference_in_money() -> None:
     """0.5 % of 169 g/kWh over 4200 MWh is 3.5 t; calculated independently by arithmetic."""
     found = cost.excess_fuel(1.005 * 169 * KG_J_PER_G_KWH, 169 * KG_J_PER_G_KWH, 4.2e6 * J_PER_KWH)
     assert found / 1e3 == pytest.approx(3.549, abs=1e-3)
+
+
+@pytest.mark.parametrize(("fuel", "u", "differs"), [(13.4, 6.6, True), (13.4, 6.8, False), (-13.4, 6.6, True),
+                                                    (0.0, 0.0, False)])  # fmt: skip
+def test_an_excess_within_its_uncertainty_is_not_different_from_zero(fuel: float, u: float, differs: bool) -> None:
+    assert cost.excess_cost(fuel, u, 3.114, 600.0).differs_from_zero is differs
 
 
 def test_readings_better_than_the_reference_are_not_clipped() -> None:
@@ -99,6 +108,10 @@ def test_readings_better_than_the_reference_are_not_clipped() -> None:
     [
         (lambda: cost.cleaning_interval(0, 6), "above zero"),
         (lambda: cost.cleaning_interval(9000, 0), "without growth no cleaning pays"),
+        (lambda: cost.cleaning_interval(float("nan"), 6), "above zero"),
+        (lambda: cost.forecast(BY_HAND, TIMES[:-1], theil_sen(BY_HAND, TIMES), 25), "one length; 14 and 13 were given"),
+        (lambda: cost.excess_cost(1.0, -1.0, 3.114, 600), "not below zero"),
+        (lambda: cost.excess_cost(1.0, 1.0, float("nan"), 600), "not below zero"),
     ],
 )
 def test_what_cannot_be_is_refused_with_what_to_do(call: Callable[[], object], sentence: str) -> None:
