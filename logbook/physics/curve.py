@@ -24,6 +24,8 @@ class Curve:
     def __post_init__(self) -> None:
         if self.load.ndim != 1 or self.load.shape != self.value.shape or self.load.size == 0:
             raise ValueError("A curve needs as many values as loads, and at least one.")
+        if not (np.isfinite(self.load).all() and np.isfinite(self.value).all()):
+            raise ValueError("A curve needs finite numbers: leave out the points that were not read.")
         if np.any(np.diff(self.load) <= 0):
             raise ValueError("The loads of a curve must rise from point to point.")
 
@@ -46,6 +48,9 @@ class Curve:
 
 
 def curve(load: ArrayLike, value: ArrayLike) -> Curve:
-    """A curve from loads (fractions of rated power) and values. ValueError: unequal, empty, or not rising."""
+    """A curve from loads (fractions of rated power) and values.
+
+    ValueError: lists unequal or empty, a number not finite, loads not rising.
+    """
     x, y = floats(load, value)
     return Curve(x, y)

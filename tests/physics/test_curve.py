@@ -82,6 +82,14 @@ def test_curve_without_the_point_with_blowers_on_says_nothing_below() -> None:
     assert np.isnan(curve(LOAD[1:], CONSUMPTION[1:])(0.30))
 
 
+@pytest.mark.parametrize("points", [1, 2, 5])
+def test_scalars_give_floats_arrays_arrays_and_an_unknown_load_no_value(points: int) -> None:
+    found = curve(np.linspace(0.75, 1.0, points), np.linspace(180, 170, points))
+    assert isinstance(found(0.75), float)
+    assert found(np.full((2, 3), 0.75)) == pytest.approx(np.full((2, 3), 180.0))
+    assert np.isnan(found([0.75, np.nan, 0.2])).tolist() == [False, True, True]
+
+
 def test_two_points_make_a_straight_line() -> None:
     assert curve([0.5, 1.0], [174.0, 170.0])(0.625) == pytest.approx(173.0)
 
@@ -98,6 +106,8 @@ def test_one_point_holds_within_two_percent_of_rated_power(load: float, holds: b
         (lambda: curve([0.75, 0.5], [170, 171]), "must rise"),
         (lambda: curve([0.5, 0.75], [170]), "as many values as loads"),
         (lambda: curve([], []), "at least one"),
+        (lambda: curve([0.25, 0.5, 0.75], [182, np.nan, 169]), "leave out the points that were not read"),
+        (lambda: curve([0.25, np.nan, 0.75], [182, 173, 169]), "leave out the points that were not read"),
     ],
 )
 def test_what_cannot_be_is_refused_with_what_to_do(call: Callable[[], object], sentence: str) -> None:
