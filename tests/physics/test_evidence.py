@@ -1,5 +1,7 @@
 """Evidence of deviations against signatures; checks calculated independently with numpy."""
 
+from collections.abc import Callable
+
 import numpy as np
 import pytest
 from hypothesis import given, settings
@@ -67,3 +69,24 @@ def test_evidence_is_standard_normal_when_nothing_is_wrong() -> None:
     found = [evidence.evidence(z, FIRST) for z in rng.normal(size=(4000, 5))]
     assert np.mean(found) == pytest.approx(0.0, abs=0.06)
     assert np.std(found) == pytest.approx(1.0, abs=0.05)
+
+
+def test_nothing_that_moved_is_like_nothing() -> None:
+    assert evidence.likeness([0, 0, 0, 0, 0], FIRST) == 0.0
+    assert evidence.evidence([0, 0, 0, 0, 0], FIRST) == 0.0
+
+
+@pytest.mark.parametrize(
+    ("call", "sentence"),
+    [
+        (lambda: evidence.evidence([1, np.nan], [np.nan, 1]), "was read"),
+        (lambda: evidence.likeness([1, 2], [0, 0]), "was read"),
+        (lambda: evidence.cosine([1, np.nan], [np.nan, 1]), "was read"),
+        (lambda: evidence.evidence([1, 2], [1]), "a code or a blank for every symptom"),
+        (lambda: evidence.standardised(1, 0, 1, 0, 1, 10), "points now and in the clean span"),
+        (lambda: evidence.standardised(1, 0, 0, 10, 0, 10), "scatter above zero"),
+    ],
+)
+def test_what_cannot_be_is_refused_with_what_to_do(call: Callable[[], object], sentence: str) -> None:
+    with pytest.raises(ValueError, match=sentence):
+        call()
