@@ -9,12 +9,14 @@ from dataclasses import dataclass
 from typing import Any
 
 import numpy as np
-from numpy.typing import ArrayLike
+from numpy.typing import ArrayLike, NDArray
 
-from logbook.physics.checks import floats, good, shaped
+from logbook.physics.checks import Floats, floats, good, shaped
+from logbook.physics.humidity import vapour_pressure
 
 REFERENCE_PRESSURE_PA, REFERENCE_TEMPERATURE_C, REFERENCE_COOLANT_C, REFERENCE_HUMIDITY = 100e3, 25.0, 25.0, 0.30
 """100 kPa, 298 K, coolant 298 K, 30 % humidity (Mathur & Sharma, Internal Combustion Engine, ch. 27)"""
+REFERENCE_VAPOUR_PRESSURE_PA: float = vapour_pressure(REFERENCE_TEMPERATURE_C, REFERENCE_HUMIDITY)
 MECHANICAL_EFFICIENCY = 0.80
 """Where the maker states none; from memory, corroborated by a public generating-set rating procedure."""
 _K = 273.0
@@ -69,33 +71,65 @@ def iso_3046(
     engine_kind: str,
     pressure_pa: ArrayLike,
     temperature_c: ArrayLike,
-    vapour_pressure_pa: ArrayLike = 0.0,
+    vapour_pressure_pa: ArrayLike | None = None,
     coolant_c: ArrayLike | None = None,
     mechanical_efficiency: ArrayLike = MECHANICAL_EFFICIENCY,
-    reference_vapour_pressure_pa: float = 950.6,
+    reference_vapour_pressure_pa: float = REFERENCE_VAPOUR_PRESSURE_PA,
 ) -> IsoCorrection:
     """ISO 3046-1 / ISO 15550 adjustment of four-stroke engines from reference to site.
 
     Barometer [Pa], air [degC], vapour pressure phi p_s [Pa] at site (and at reference: 30 % at 25 degC), charge-air
-    coolant at the cooler's inlet [degC]; `coolant_c` None: not read, its term is left out. An element of the coolant
-    that is NaN is left out likewise. alpha above 1 is arithmetic, not permission to overload. Raises ValueError when
-    alpha would not be positive. Large two-stroke crosshead engines are not covered: see `percentage_rules`.
+    coolant at the cooler's inlet [degC]. The vapour pressure counts only for kinds with a = 1 and is asked for there;
+    `coolant_c` None: not read, its term is left out. An element of the coolant that is NaN is left out likewise.
+    Large two-stroke crosshead engines are not covered: see `percentage_rules`. Raises ValueError for states that cannot
+    be, and when alpha would not be positive.
     """
     e = exponents(engine_kind)
-    p, t, pv, eta = floats(pressure_pa, temperature_c, vapour_pressure_pa, mechanical_efficiency)
-    good((p > 30e3) & (p < 120e3), "The barometer must be in Pa here: 30 000 to 120 000.", p, t, pv)
-    good((eta > 0) & (eta <= 1), "Mechanical efficiency lies between 0 and 1.", p, t, eta)
-    k = ((p - e.a * pv) / (REFERENCE_PRESSURE_PA - e.a * reference_vapour_pressure_pa)) ** e.m * (
-        (REFERENCE_TEMPERATURE_C + _K) / (t + _K)
-    ) ** e.n
-    if coolant_c is not None and e.s:
-        coolant = np.asarray(coolant_c, float)
-        factor = ((REFERENCE_COOLANT_C + _K) / (coolant + _K)) ** e.s
-        k = k * np.where(np.isnan(coolant), 1.0, factor)
-    alpha = k - 0.7 * (1 - k) * (1 / eta - 1)
-    holds = good(alpha > 0, "These conditions leave no power at all (alpha is not above zero): check them.", p, t, eta)
-    alpha = np.where(holds, alpha, np.nan)
+    if e.a and vapour_pressure_pa is None:
+        raise ValueError("Humidity counts for this kind of engine: enter it.")
+    vapour = vapour_pressure_pa if e.a and vapour_pressure_pa is not None else 0.0
+    coolant = _coolant(coolant_c if e.s else None)
+    p, t, pv, eta = floats(pressure_pa, temperature_c, vapour, mechanical_efficiency)
+    inputs = (p, t, pv, eta, coolant)
+    holds = (
+        _known_temperatures(t, coolant, *inputs)
+        & good((p > 30e3) & (p < 120e3), "The barometer must be in Pa here: 30 000 to 120 000.", *inputs)
+        & good((pv >= 0) & (pv < p), "The pressure of the vapour is a part of the barometer's.", *inputs)
+    )
+    p, t, coolant = (np.where(holds, value, np.nan) for value in (p, t, coolant))
+    k = (
+        ((p - e.a * pv) / (REFERENCE_PRESSURE_PA - e.a * reference_vapour_pressure_pa)) ** e.m
+        * ((REFERENCE_TEMPERATURE_C + _K) / (t + _K)) ** e.n
+        * ((REFERENCE_COOLANT_C + _K) / (coolant + _K)) ** e.s
+    )
+    return power_and_consumption(k, eta)
+
+
+def power_and_consumption(k: ArrayLike, mechanical_efficiency: ArrayLike = MECHANICAL_EFFICIENCY) -> IsoCorrection:
+    """alpha and beta of a power ratio k: alpha = k - 0.7 (1 - k)(1/eta_m - 1), beta = k/alpha.
+
+    Raises ValueError when alpha would not be positive, which is at k = c/(1 + c) and below, c = 0.7 (1/eta_m - 1).
+    alpha above 1 is arithmetic, not permission to overload.
+    """
+    k, eta = floats(k, mechanical_efficiency)
+    possible = good((eta > 0) & (eta <= 1), "Mechanical efficiency lies between 0 and 1.", k, eta)
+    alpha = k - 0.7 * (1 - k) * (1 / np.where(possible, eta, np.nan) - 1)
+    left = good(alpha > 0, "These conditions leave no power at all (alpha is not above zero): check them.", k, eta)
+    alpha = np.where(left, alpha, np.nan)
     return IsoCorrection(shaped(k), shaped(alpha), shaped(k / alpha))
+
+
+def _coolant(coolant_c: ArrayLike | None) -> Floats:
+    """Coolant temperature [degC]; where it was not read that of the reference, which leaves its term out."""
+    coolant = np.asarray(np.nan if coolant_c is None else coolant_c, float)
+    return np.where(np.isnan(coolant), REFERENCE_COOLANT_C, coolant)
+
+
+def _known_temperatures(air: Floats, coolant: Floats, *inputs: Floats) -> NDArray[np.bool_]:
+    """Whether both can be degC: 298 is kelvin."""
+    return good((air >= -60) & (air <= 100), "The temperature of the air must be in degC, -60 to 100.", *inputs) & good(
+        (coolant >= -10) & (coolant <= 100), "The temperature of the coolant must be in degC, -10 to 100.", *inputs
+    )
 
 
 POWER_READJUSTED = (0.60, 0.20, -0.02)
@@ -118,21 +152,30 @@ def percentage_rules(
     that is NaN: not read, its term is left out.
     """
     t, p = floats(blower_c, pressure_mbar)
-    d = percent_air * (t - 25) / 10 + percent_barometer * (p - 1000) / 10
-    if coolant_c is not None:
-        coolant = np.asarray(coolant_c, float)
-        d = d + np.where(np.isnan(coolant), 0.0, percent_coolant * (coolant - 25) / 10)
-    return shaped(1 + d / 100)
+    coolant = _coolant(coolant_c)
+    holds = _known_temperatures(t, coolant, t, p, coolant) & good(
+        (p > 300) & (p < 1200), "The barometer must be in mbar here: 300 to 1200.", t, p, coolant
+    )
+    d = (
+        percent_coolant * (coolant - REFERENCE_COOLANT_C)
+        + percent_air * (t - REFERENCE_TEMPERATURE_C)
+        + percent_barometer * (p - REFERENCE_PRESSURE_PA / 100)
+    ) / 10
+    return shaped(np.where(holds, 1 + d / 100, np.nan))
 
 
 @dataclass(frozen=True, slots=True)
 class OwnSensitivity:
-    """An engine's own ambient sensitivity: ln(b/b_ref) = c0 + c1 (t - 25)/10 [percent]."""
+    """An engine's own ambient sensitivity: 100 ln(b/b_ref) = c0 + c1 (t - 25)/10 + c2 h/1000."""
 
     c0: float
     c1: float
+    """[% per 10 K]"""
+    c2: float
+    """[% per 1000 running hours]; 0 over a span too short to tell"""
     u_c1: float
     scatter: float
+    """of one point about the fit [%]"""
 
     @property
     def usable(self) -> bool:
@@ -142,24 +185,40 @@ class OwnSensitivity:
     def factor(self, suction_c: ArrayLike) -> Any:
         """Ambient factor a at a suction temperature [degC]."""
         (t,) = floats(suction_c)
-        return shaped(np.exp(self.c1 / 100 * (t - 25) / 10))
+        return shaped(np.exp(self.c1 / 100 * (t - REFERENCE_TEMPERATURE_C) / 10))
+
+    def relative_u(self, suction_c: ArrayLike) -> Any:
+        """Relative standard uncertainty of the factor: u(ln a) = u(c1)/100 |t - 25|/10."""
+        (t,) = floats(suction_c)
+        return shaped(self.u_c1 / 100 * np.abs(t - REFERENCE_TEMPERATURE_C) / 10)
+
+
+SPAN_WITH_WEAR_H = 500.0
+"""Over a longer span the engine's own change is fitted beside the ambient's."""
 
 
 def own_sensitivity(
-    suction_c: ArrayLike, log_ratio_percent: ArrayLike, n_effective: float | None = None
+    suction_c: ArrayLike,
+    log_ratio_percent: ArrayLike,
+    running_h: ArrayLike | None = None,
+    n_effective: float | None = None,
 ) -> OwnSensitivity:
     """Least squares of 100 ln(b/b_ref) over suction temperature [degC]; u(c1) times sqrt(n/n_eff).
 
-    Raises ValueError below 3 points or without any spread of temperature.
+    Arrays (n,). `running_h` of the points [h]: where they span more than 500 hours, a change with running hours is
+    fitted beside. Raises ValueError where temperatures do not spread, or the points are too few for the fit.
     """
     t, y = floats(suction_c, log_ratio_percent)
     n = t.size
-    if n < 3 or np.ptp(t) == 0:
+    columns = [np.ones(n), (t - REFERENCE_TEMPERATURE_C) / 10]
+    if running_h is not None and np.ptp(running_h) > SPAN_WITH_WEAR_H:
+        columns.append(np.asarray(running_h, float) / 1000)
+    design = np.column_stack(columns)
+    if n <= len(columns) or np.linalg.matrix_rank(design) < len(columns):
         raise ValueError("An own ambient sensitivity needs at least 3 points at different suction temperatures.")
-    x = (t - 25) / 10
-    design = np.column_stack([np.ones(n), x])
-    coefficients, *_ = np.linalg.lstsq(design, y, rcond=None)
-    residual = y - design @ coefficients
-    scatter = float(np.sqrt(residual @ residual / (n - 2)))
-    u = scatter / float(np.sqrt(((x - x.mean()) ** 2).sum())) * np.sqrt(n / (n_effective or n))
-    return OwnSensitivity(float(coefficients[0]), float(coefficients[1]), float(u), scatter)
+    found, *_ = np.linalg.lstsq(design, y, rcond=None)
+    residual = y - design @ found
+    scatter = float(np.sqrt(residual @ residual / (n - len(columns))))
+    u = scatter * float(np.sqrt(np.linalg.inv(design.T @ design)[1, 1] * n / (n_effective or n)))
+    c2 = float(found[2]) if len(columns) == 3 else 0.0
+    return OwnSensitivity(float(found[0]), float(found[1]), c2, u, scatter)

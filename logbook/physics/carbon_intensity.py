@@ -66,6 +66,17 @@ REFERENCE_LINES: dict[str, tuple[ReferenceLine, ...]] = {
 }
 
 
+BY_GROSS_TONNAGE = frozenset({"ro-ro vehicle", "ro-ro cargo", "ro-ro passenger", "cruise passenger"})
+"""Ship types whose capacity is the gross tonnage; of all others it is the deadweight."""
+FROM_MEMORY = {
+    "refrigerated cargo": "bounds of the ratings",
+    "ro-ro cargo": "bounds of the ratings",
+    "cruise passenger": "bounds of the ratings",
+    "ro-ro passenger": "reference line and bounds of the ratings",
+}
+"""What of a ship type's row no public text was found for."""
+
+
 @dataclass(frozen=True, slots=True)
 class CarbonIntensity:
     """Attained and required [g/(t nm) or g/(GT nm)], their ratio, the rating and the bounds between ratings."""

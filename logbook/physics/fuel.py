@@ -71,7 +71,8 @@ def ignition_number(
     holds = good(v >= 5, "The ignition number needs a viscosity of 5 mm2/s or more.", rho, v, t) & good(
         (rho > 600) & (rho < 1100), "Density at 15 degC must be in kg/m3, e.g. 987.", rho, v, t
     )
-    v = np.where(holds, v, np.nan)
+    holds &= good((t >= 0) & (t <= 150), "The viscosity's temperature is in degC, 0 to 150.", rho, v, t)
+    v, t = (np.where(holds, value, np.nan) for value in (v, t))
     return shaped(rho - 81 - 141 * np.log10(np.log10(v + 0.85)) - 483 * np.log10((t + 273) / 323))
 
 
@@ -82,7 +83,7 @@ def air_need(carbon: ArrayLike, hydrogen: ArrayLike, sulphur: ArrayLike = 0.0, o
     """Stoichiometric dry air [kg/kg fuel] from mass fractions of the fuel (0..1). Dry air: 0.2314 O2 by mass."""
     c, h, s, o = floats(carbon, hydrogen, sulphur, oxygen)
     holds = good(
-        (c >= 0) & (h >= 0) & (s >= 0) & (o >= 0) & (c + h + s + o <= 1.02),
+        (c >= 0) & (h >= 0) & (s >= 0) & (o >= 0) & (c + h + s + o <= 1 + 1e-9),
         "Mass fractions of the fuel lie between 0 and 1 and do not add up to more than 1.",
         c, h, s, o,
     )  # fmt: skip
@@ -93,7 +94,8 @@ def air_need(carbon: ArrayLike, hydrogen: ArrayLike, sulphur: ArrayLike = 0.0, o
 def hydrogen_to_carbon(carbon: ArrayLike, hydrogen: ArrayLike) -> Any:
     """Atoms of hydrogen for each of carbon, from mass fractions."""
     c, h = floats(carbon, hydrogen)
-    return shaped((h / 1.008) / (c / 12.011))
+    holds = good((c > 0) & (h >= 0), "Carbon must be above zero, hydrogen not below: mass fractions of the fuel.", c, h)
+    return shaped((h / 1.008) / (np.where(holds, c, np.nan) / 12.011))
 
 
 @dataclass(frozen=True, slots=True)
@@ -104,27 +106,38 @@ class ReportingFuel:
     carbon: float
     carbon_factor: float
     """t CO2 per t fuel"""
+    factor_quoted: bool = False
+    """the carbon factor is quoted in public secondary texts; all else in a row is from memory"""
 
 
 REPORTING_FUELS = {
-    "diesel_oil": ReportingFuel(42.7, 0.8744, 3.206),
-    "light_fuel_oil": ReportingFuel(41.2, 0.8594, 3.151),
-    "heavy_fuel_oil": ReportingFuel(40.2, 0.8493, 3.114),
+    "diesel_oil": ReportingFuel(42.7, 0.8744, 3.206, factor_quoted=True),
+    "light_fuel_oil": ReportingFuel(41.2, 0.8594, 3.151, factor_quoted=True),
+    "heavy_fuel_oil": ReportingFuel(40.2, 0.8493, 3.114, factor_quoted=True),
     "propane": ReportingFuel(46.3, 0.8182, 3.000),
     "butane": ReportingFuel(45.7, 0.8264, 3.030),
     "ethane": ReportingFuel(46.4, 0.7989, 2.927),
-    "natural_gas": ReportingFuel(48.0, 0.7500, 2.750),
+    "natural_gas": ReportingFuel(48.0, 0.7500, 2.750, factor_quoted=True),
     "methanol": ReportingFuel(19.9, 0.3750, 1.375),
     "ethanol": ReportingFuel(26.8, 0.5217, 1.913),
 }
-"""Carbon factors of the oils and natural gas as quoted in public secondary texts; heating values, carbon content and
-the other rows are from memory."""
 
 
 def blended_calorific_value(mass_kg: ArrayLike, lower_calorific_value_j_kg: ArrayLike) -> Any:
-    """Heating value of fuels mixed by mass [J/kg]; arrays run over the fuels on axis 0."""
-    m, q = floats(mass_kg, lower_calorific_value_j_kg)
-    return shaped((m * q).sum(axis=0) / m.sum(axis=0))
+    """Heating value of fuels mixed in one tank [J/kg], by mass; arrays run over the fuels on axis 0."""
+    return _weighted(lower_calorific_value_j_kg, mass_kg)
+
+
+def blended_density(volume15_m3: ArrayLike, density15_kg_m3: ArrayLike) -> Any:
+    """Density of fuels mixed in one tank [kg/m3], by volume, all at 15 degC; arrays run over the fuels on axis 0."""
+    return _weighted(density15_kg_m3, volume15_m3)
+
+
+def _weighted(value: ArrayLike, amount: ArrayLike) -> Any:
+    x, a = floats(value, amount)
+    total, least = a.sum(axis=0), a.min(axis=0)
+    holds = good((least >= 0) & (total > 0), "Amounts mixed are not below zero, and one at least above.", total, least)
+    return shaped((a * x).sum(axis=0) / np.where(holds, total, np.nan))
 
 
 NORMAL_TEMPERATURE_K, STANDARD_TEMPERATURE_K, REFERENCE_PRESSURE_PA = 273.15, 288.15, 101325.0
@@ -142,5 +155,9 @@ def gas_volume(
     Pressure absolute [Pa], temperature [K], Z_ref/Z. Heating value and volume must share the reference.
     """
     v, p, t, z = floats(volume_m3, pressure_pa, temperature_k, compressibility_ratio)
-    holds = good((p > 0) & (t > 0), "Gas pressure must be absolute and above zero, temperature in kelvin.", v, p, t)
-    return shaped(np.where(holds, v * p / REFERENCE_PRESSURE_PA * reference_temperature_k / t * z, np.nan))
+    holds = good(
+        (p > 0) & (t > 0) & (z > 0),
+        "Gas pressure must be absolute and above zero, temperature in kelvin, the ratio of Z above zero.",
+        v, p, t, z,
+    )  # fmt: skip
+    return shaped(v * p / REFERENCE_PRESSURE_PA * reference_temperature_k / np.where(holds, t, np.nan) * z)

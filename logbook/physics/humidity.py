@@ -7,7 +7,7 @@ from typing import Any
 import numpy as np
 from numpy.typing import ArrayLike
 
-from logbook.physics.checks import floats, good, shaped
+from logbook.physics.checks import Floats, floats, good, shaped
 
 
 def saturation_pressure(temperature_c: ArrayLike) -> Any:
@@ -26,13 +26,21 @@ def vapour_pressure(temperature_c: ArrayLike, relative_humidity: ArrayLike) -> A
 
 def humidity_ratio(temperature_c: ArrayLike, relative_humidity: ArrayLike, pressure_pa: ArrayLike) -> Any:
     """Water for each kilogram of dry air [kg/kg]; total pressure [Pa]."""
-    (p,) = floats(pressure_pa)
-    pv = np.asarray(vapour_pressure(temperature_c, relative_humidity))
+    pv, p = _vapour_and_total(temperature_c, relative_humidity, pressure_pa)
     return shaped(0.621945 * pv / (p - pv))
 
 
 def moist_density(temperature_c: ArrayLike, relative_humidity: ArrayLike, pressure_pa: ArrayLike) -> Any:
-    """Density of moist air [kg/m3]."""
-    t, p = floats(temperature_c, pressure_pa)
-    pv = np.asarray(vapour_pressure(t, relative_humidity))
+    """Density of moist air [kg/m3]; total pressure [Pa]."""
+    (t,) = floats(temperature_c)
+    pv, p = _vapour_and_total(t, relative_humidity, pressure_pa)
     return shaped((p - 0.378 * pv) / (287.05 * (t + 273.15)))
+
+
+def _vapour_and_total(
+    temperature_c: ArrayLike, relative_humidity: ArrayLike, pressure_pa: ArrayLike
+) -> tuple[Floats, Floats]:
+    (p,) = floats(pressure_pa)
+    pv: Floats = np.asarray(vapour_pressure(temperature_c, relative_humidity))
+    holds = good(p > pv, "The barometer must be in Pa, and above the pressure of the water vapour alone.", p, pv)
+    return pv, np.where(holds, p, np.nan)

@@ -20,7 +20,8 @@ W_PER_METRIC_HORSEPOWER = 735.49875
 def swept_volume(bore_m: ArrayLike, stroke_m: ArrayLike) -> Any:
     """Swept volume of one cylinder [m3]."""
     d, s = floats(bore_m, stroke_m)
-    return shaped(pi * d**2 * s / 4)
+    holds = good((d > 0) & (s > 0), "Bore and stroke must be above zero.", d, s)
+    return shaped(pi * np.where(holds, d, np.nan) ** 2 * s / 4)
 
 
 def revolutions_per_cycle(cycle: str) -> int:
@@ -44,7 +45,8 @@ def torsion_power(
         twist_rad, shear_modulus_pa, outer_diameter_m, length_m, speed_rev_s, inner_diameter_m
     )
     holds = good(
-        (length > 0) & (do > di), "Measured length must be above zero, and the shaft's bore smaller than its outside.",
+        (length > 0) & (di >= 0) & (do > di),
+        "Measured length must be above zero, and the shaft's bore smaller than its outside.",
         theta, g, do, length, n, di,
     )  # fmt: skip
     torque = g * pi * (do**4 - di**4) / 32 * theta / np.where(holds, length, np.nan)
@@ -79,20 +81,26 @@ def power_from_mean_pressure(
 ) -> Any:
     """Power [W] from a mean pressure [Pa]: p V_s z n/k."""
     p, v, z, n = floats(pressure_pa, swept_volume_m3, cylinders, speed_rev_s)
-    return shaped(p * v * z * n / revolutions_per_cycle(cycle))
+    holds = good(
+        (n >= 0) & (v > 0) & (z > 0), "Swept volume and cylinders must be above zero, speed not below.", p, v, z, n
+    )
+    return shaped(p * np.where(holds, v * z * n, np.nan) / revolutions_per_cycle(cycle))
 
 
 def cylinder_constant(swept_volume_m3: ArrayLike, cycle: str) -> Any:
     """kW for each bar and rev/min of one cylinder [kW/(bar rpm)]."""
     (v,) = floats(swept_volume_m3)
-    return shaped(v * 1e5 / (60 * 1000 * revolutions_per_cycle(cycle)))
+    holds = good(v > 0, "Swept volume must be above zero.", v)
+    return shaped(np.where(holds, v, np.nan) * 1e5 / (60 * 1000 * revolutions_per_cycle(cycle)))
 
 
 def specific_consumption(fuel_kg: ArrayLike, energy_j: ArrayLike) -> Any:
     """Fuel for the energy delivered [kg/J]; over a period: sums first, divided last."""
     m, e = floats(fuel_kg, energy_j)
-    holds = good(e > 0, "No energy was delivered: there is no specific consumption.", m, e)
-    return shaped(np.where(holds, m / np.where(holds, e, 1), np.nan))
+    holds = good(e > 0, "No energy was delivered: there is no specific consumption.", m, e) & good(
+        m >= 0, "Fuel consumed is below zero: check both readings of the meter.", m, e
+    )
+    return shaped(m / np.where(holds, e, np.nan))
 
 
 def brake_efficiency(consumption_kg_j: ArrayLike, lower_calorific_value_j_kg: ArrayLike) -> Any:
@@ -100,6 +108,13 @@ def brake_efficiency(consumption_kg_j: ArrayLike, lower_calorific_value_j_kg: Ar
     b, q = floats(consumption_kg_j, lower_calorific_value_j_kg)
     holds = good((b > 0) & (q > 0), "Consumption and calorific value must be above zero.", b, q)
     return shaped(np.where(holds, 1 / np.where(holds, b * q, 1), np.nan))
+
+
+def heat_rate(consumption_kg_j: ArrayLike, lower_calorific_value_j_kg: ArrayLike) -> Any:
+    """Heat of the fuel for each unit of work [J/J]: b LCV, the inverse of the efficiency. Times 3600: kJ/kWh."""
+    b, q = floats(consumption_kg_j, lower_calorific_value_j_kg)
+    holds = good((b > 0) & (q > 0), "Consumption and calorific value must be above zero.", b, q)
+    return shaped(b * np.where(holds, q, np.nan))
 
 
 def efficiency_of_fuels(energy_j: ArrayLike, mass_kg: ArrayLike, lower_calorific_value_j_kg: ArrayLike) -> Any:
@@ -113,13 +128,14 @@ def efficiency_of_fuels(energy_j: ArrayLike, mass_kg: ArrayLike, lower_calorific
 def propeller_power(power_w: ArrayLike, speed_ratio: ArrayLike) -> Any:
     """Power at another speed on the same propeller curve [W]: cube of the speed ratio. Fixed pitch, same condition."""
     p, ratio = floats(power_w, speed_ratio)
-    return shaped(p * ratio**3)
+    holds = good(ratio >= 0, "The speed ratio is not below zero.", p, ratio)
+    return shaped(p * np.where(holds, ratio, np.nan) ** 3)
 
 
 def running_index(power_ratio: ArrayLike, speed_ratio: ArrayLike) -> Any:
     """(P/P_rated)/(n/n_rated)^3: above 1 heavy, below 1 light running."""
     p, n = floats(power_ratio, speed_ratio)
-    holds = good(n > 0, "The speed ratio must be above zero.", p, n)
+    holds = good((p >= 0) & (n > 0), "The speed ratio must be above zero, and the power ratio not below.", p, n)
     return shaped(p / np.where(holds, n, np.nan) ** 3)
 
 
@@ -127,8 +143,9 @@ def slip(pitch_m: ArrayLike, revolutions: ArrayLike, distance_m: ArrayLike) -> t
     """(apparent slip, engine distance [m]): (pitch x revolutions - distance over ground)/engine distance."""
     pitch, rev, dist = floats(pitch_m, revolutions, distance_m)
     engine = pitch * rev
-    holds = good(engine > 0, "Pitch and revolutions must be above zero.", pitch, rev, dist)
-    return shaped(np.where(holds, (engine - dist) / np.where(holds, engine, 1), np.nan)), shaped(engine)
+    holds = good((pitch > 0) & (rev > 0), "Pitch and revolutions must be above zero.", pitch, rev, dist)
+    engine = np.where(holds, engine, np.nan)
+    return shaped((engine - dist) / engine), shaped(engine)
 
 
 def power_from_index(curve_power_w: ArrayLike, speed_ratio: ArrayLike, fuel_energy_ratio: ArrayLike) -> Any:
@@ -137,4 +154,7 @@ def power_from_index(curve_power_w: ArrayLike, speed_ratio: ArrayLike, fuel_ener
     It is fuel turned into power: an efficiency from it is shown and never compared.
     """
     p, n, q = floats(curve_power_w, speed_ratio, fuel_energy_ratio)
-    return shaped(p * n * q)
+    holds = good(
+        (n >= 0) & (q > 0), "The speed ratio is not below zero, and the fuel's energy ratio above zero.", p, n, q
+    )
+    return shaped(p * n * np.where(holds, q, np.nan))

@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 from hypothesis import assume, given, settings
 from hypothesis import strategies as st
-from scipy.optimize import brentq
+from scipy.stats import linregress
 
 from logbook.physics import ambient
 from logbook.physics.curve import curve
@@ -14,7 +14,6 @@ from logbook.physics.humidity import vapour_pressure
 
 NATURALLY_ASPIRATED = "diesel or dual-fuel, naturally aspirated, limited by excess air"
 CHARGE_COOLED = "turbocharged four-stroke, charge-air cooler"
-REFERENCE_VAPOUR_PA = vapour_pressure(25.0, 0.30)
 
 
 def test_textbook_site() -> None:
@@ -42,8 +41,7 @@ def test_site_factors(
 ) -> None:  # fmt: skip
     """Calculated independently by arithmetic with Buck's vapour pressures."""
     found = ambient.iso_3046(
-        kind, pressure, air, vapour_pressure(air, humidity), coolant, eta,
-        reference_vapour_pressure_pa=REFERENCE_VAPOUR_PA,
+        kind, pressure, air, vapour_pressure(air, humidity), coolant, eta
     )  # fmt: skip
     assert (found.k, found.alpha, found.beta) == pytest.approx((k, alpha, beta), abs=1e-5)
 
@@ -51,15 +49,48 @@ def test_site_factors(
 @pytest.mark.parametrize("kind", list(ambient.ISO_3046))
 @pytest.mark.parametrize("coolant", [None, 25.0])
 def test_factors_are_one_at_reference(kind: str, coolant: float | None) -> None:
-    found = ambient.iso_3046(
-        kind, 100e3, 25.0, REFERENCE_VAPOUR_PA, coolant, reference_vapour_pressure_pa=REFERENCE_VAPOUR_PA
-    )
+    found = ambient.iso_3046(kind, 100e3, 25.0, vapour_pressure(25.0, 0.30), coolant)
     assert (found.k, found.alpha, found.beta) == pytest.approx((1.0, 1.0, 1.0), abs=1e-12)
 
 
 def test_the_reference_vapour_pressure_is_that_of_30_percent_at_25_degrees() -> None:
     """Calculated independently by arithmetic with Buck's formula: 950.56 Pa."""
-    assert pytest.approx(950.6, abs=0.05) == REFERENCE_VAPOUR_PA
+    assert pytest.approx(950.56, abs=0.005) == ambient.REFERENCE_VAPOUR_PRESSURE_PA
+
+
+@pytest.mark.parametrize(("kind", "counts"), [(kind, row.a == 1) for kind, row in ambient.ISO_3046.items()])
+def test_humidity_is_asked_for_where_it_counts_and_only_there(kind: str, counts: bool) -> None:
+    if counts:
+        with pytest.raises(ValueError, match="Humidity counts"):
+            ambient.iso_3046(kind, 98e3, 30.0)
+        assert ambient.iso_3046(kind, 98e3, 30.0, 3000.0).k < ambient.iso_3046(kind, 98e3, 30.0, 1000.0).k
+    else:
+        without = ambient.iso_3046(kind, 98e3, 30.0)
+        assert ambient.iso_3046(kind, 98e3, 30.0, 3000.0) == without
+        # A humidity that was not read takes nothing away where it does not count.
+        assert ambient.iso_3046(kind, 98e3, 30.0, float("nan")) == without
+
+
+@pytest.mark.parametrize(
+    ("kind", "a", "m", "n", "s"),
+    [
+        ("diesel or dual-fuel, naturally aspirated, limited by excess air", 1, 1, 0.75, 0),  # Mathur & Sharma ex. 27.1
+        ("diesel or dual-fuel, naturally aspirated, limited thermally", 0, 1, 1, 0),  # from memory
+        ("turbocharged four-stroke, no charge-air cooler", 0, 0.7, 2.0, 0),  # a public rating procedure, a from memory
+        ("turbocharged four-stroke, charge-air cooler", 0, 0.7, 1.2, 1),  # Mathur & Sharma ex. 27.2
+        ("spark gas, naturally aspirated", 1, 0.86, 0.55, 0),  # a public generating-set rating procedure
+        ("spark gas, turbocharged, cooler", 0, 0.57, 0.55, 1.75),  # from memory, low confidence
+        ("spark petrol, naturally aspirated", 1, 1, 0.5, 0),  # a public generating-set rating procedure
+    ],
+)
+def test_exponents_by_the_words_of_the_table(kind: str, a: float, m: float, n: float, s: float) -> None:
+    row = ambient.exponents(kind)
+    assert (row.a, row.m, row.n, row.s) == (a, m, n, s)
+    assert row.standing
+
+
+def test_the_words_of_the_table_are_all_there() -> None:
+    assert len(ambient.ISO_3046) == 7
 
 
 @settings(max_examples=40)
@@ -87,11 +118,16 @@ def test_alpha_becomes_k_without_friction(pressure: float, air: float) -> None:
 
 def test_no_power_is_left_at_the_least_k() -> None:
     """Calculated independently by arithmetic: at eta_m 0.8 the least k is c/(1 + c) = 0.14894, c = 0.175."""
-    kind = "diesel or dual-fuel, naturally aspirated, limited thermally"
-    air = brentq(lambda t: 0.35 * 298 / (t + 273) - 0.14894, 100, 1000)
-    assert 0 < ambient.iso_3046(kind, 35e3, air - 1).alpha < 0.005
+    assert 0 < ambient.power_and_consumption(0.14894 + 1e-5, 0.8).alpha < 2e-5
     with pytest.raises(ValueError, match="no power"):
-        ambient.iso_3046(kind, 35e3, air + 1)
+        ambient.power_and_consumption(0.14894 - 1e-5, 0.8)
+    # At eta_m 0.5 it is 0.41176, which 45 degC and 45 kPa reach.
+    kind = "diesel or dual-fuel, naturally aspirated, limited thermally"
+    found = ambient.iso_3046(kind, np.array([45e3, 43e3]), 45.0, mechanical_efficiency=0.5)
+    assert found.k == pytest.approx([0.45 * 298 / 318, 0.43 * 298 / 318])
+    assert found.alpha[0] > 0
+    assert np.isnan(found.alpha[1])
+    assert np.isnan(found.beta[1])
 
 
 def test_a_coolant_not_read_leaves_its_term_out_in_an_array_too() -> None:
@@ -147,6 +183,29 @@ def test_own_sensitivity() -> None:
     assert found.usable
     assert found.factor(25.0) == 1.0
     assert found.factor(35.0) == pytest.approx(np.exp(0.0035198), abs=1e-7)
+    assert found.relative_u(np.array([5.0, 25.0, 35.0])) == pytest.approx([7.048e-4, 0.0, 3.524e-4], abs=1e-7)
+
+
+def test_own_sensitivity_beside_wear_over_a_long_span() -> None:
+    """Made of c0 0.1, c1 0.35, c2 0.4 exactly: a span of 700 hours gives all three back, 500 hours fit no wear."""
+    t, hours = np.array(SUCTION, float), np.array([0.0, 700, 100, 600, 200, 500, 300, 400])
+    made = 0.1 + 0.35 * (t - 25) / 10 + 0.4 * hours / 1000
+    found = ambient.own_sensitivity(t, made, hours)
+    assert (found.c0, found.c1, found.c2, found.u_c1) == pytest.approx((0.1, 0.35, 0.4, 0.0), abs=1e-9)
+    short = ambient.own_sensitivity(t, made, hours * 500 / 700)
+    assert short == ambient.own_sensitivity(t, made)
+    assert short.c2 == 0
+
+
+@settings(max_examples=40)
+@given(st.lists(st.floats(-0.5, 0.5), min_size=8, max_size=8))
+def test_own_sensitivity_agrees_with_scipy(errors: list[float]) -> None:
+    """linregress, live."""
+    y = np.array(LOG_RATIO) + errors
+    assume(np.ptp(y) > 1e-3)
+    line = linregress((np.array(SUCTION) - 25) / 10, y)
+    found = ambient.own_sensitivity(SUCTION, y)
+    assert (found.c0, found.c1, found.u_c1) == pytest.approx((line.intercept, line.slope, line.stderr), abs=1e-9)
 
 
 def test_own_sensitivity_with_fewer_independent_points_is_less_certain() -> None:
@@ -160,6 +219,11 @@ def test_own_sensitivity_with_fewer_independent_points_is_less_certain() -> None
     [
         (lambda: ambient.exponents("two-stroke"), "no kind of engine here; there are: diesel"),
         (lambda: ambient.iso_3046(CHARGE_COOLED, 1000.0, 25.0), "barometer must be in Pa"),
+        (lambda: ambient.iso_3046(CHARGE_COOLED, 1e5, 298.0), "air must be in degC"),
+        (lambda: ambient.iso_3046(CHARGE_COOLED, 1e5, 25.0, coolant_c=298.0), "coolant must be in degC"),
+        (lambda: ambient.iso_3046(NATURALLY_ASPIRATED, 1e5, 25.0, 2e5), "part of the barometer"),
+        (lambda: ambient.percentage_rules(25, 1.0, 25, 0.6, 0.2, -0.02), "barometer must be in mbar"),
+        (lambda: ambient.percentage_rules(298, 1000, 25, 0.6, 0.2, -0.02), "air must be in degC"),
         (lambda: ambient.iso_3046(CHARGE_COOLED, 1e5, 25.0, mechanical_efficiency=85), "between 0 and 1"),
         (lambda: ambient.own_sensitivity([25, 25, 25], [0, 1, 2]), "different suction temperatures"),
         (lambda: ambient.own_sensitivity([25, 35], [0, 1]), "at least 3 points"),

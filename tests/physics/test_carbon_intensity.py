@@ -6,7 +6,14 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
-from logbook.physics.carbon_intensity import RATINGS, REDUCTION_PERCENT, REFERENCE_LINES, carbon_intensity
+from logbook.physics.carbon_intensity import (
+    BY_GROSS_TONNAGE,
+    FROM_MEMORY,
+    RATINGS,
+    REDUCTION_PERCENT,
+    REFERENCE_LINES,
+    carbon_intensity,
+)
 
 
 def test_bulk_carrier_of_one_capacity() -> None:
@@ -107,6 +114,12 @@ def test_the_rating_follows_the_bounds(ship: str, capacity: float, mass: float) 
 def test_what_cannot_be_is_refused_with_what_to_do(call: Callable[[], object], sentence: str) -> None:
     with pytest.raises(ValueError, match=sentence):
         call()
+
+
+def test_which_capacity_counts_and_what_is_from_memory() -> None:
+    """MEPC.352(78): gross tonnage for ro-ro and cruise ships, deadweight for all others."""
+    assert {name for name in REFERENCE_LINES if name.startswith(("ro-ro", "cruise"))} == BY_GROSS_TONNAGE
+    assert set(FROM_MEMORY) == {"refrigerated cargo", "ro-ro cargo", "ro-ro passenger", "cruise passenger"}
 
 
 def test_every_year_has_its_reduction() -> None:

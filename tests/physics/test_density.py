@@ -46,10 +46,34 @@ def test_volume_correction_falls_with_temperature(rho15: float, temperature: flo
 
 
 @settings(max_examples=40)
-@given(st.floats(840, 1050), st.floats(-10, 150))
+@given(st.one_of(st.floats(653.1, 769), st.floats(771.5, 837.5), st.floats(839.5, 1074.9)), st.floats(-30, 150))
 def test_density15_inverts_the_density_at_temperature(rho15: float, temperature: float) -> None:
+    """Over the whole table but the two jumps of its constants."""
     at_t = rho15 * density.volume_correction(rho15, temperature)
     assert density.density15(at_t, temperature) == pytest.approx(rho15, abs=1e-5)
+
+
+@settings(max_examples=40)
+@given(st.sampled_from([770.5, 838.5]), st.floats(-30, 90), st.floats(-0.2, 0.2))
+def test_density15_at_the_jumps_of_the_constants(bound: float, temperature: float, off: float) -> None:
+    """No exact solution exists in a narrow band: the density found gives the reading back within 0.1 kg/m3."""
+    at_t = (bound + off) * density.volume_correction(bound + off, temperature)
+    found = density.density15(at_t, temperature)
+    assert found * density.volume_correction(found, temperature) == pytest.approx(at_t, abs=0.1)
+
+
+@settings(max_examples=40)
+@given(st.floats(845, 1000), st.floats(15.1, 60))
+def test_a_glass_hydrometer_reads_too_high_when_warm(reading: float, temperature: float) -> None:
+    assert density.density15(reading, temperature, glass=True) < density.density15(reading, temperature)
+
+
+@pytest.mark.parametrize(("reading", "temperature"), [(640.0, 40.0), (983.0, 150.0)])
+def test_a_reading_outside_the_table_may_be_of_a_density_inside(reading: float, temperature: float) -> None:
+    """Light oil warm, and heavy oil so hot that the first step overshoots the end of the table."""
+    found = density.density15(reading, temperature)
+    assert density.LEAST < found < density.GREATEST
+    assert found * density.volume_correction(found, temperature) == pytest.approx(reading, abs=1e-6)
 
 
 @pytest.mark.parametrize(

@@ -11,7 +11,8 @@ import numpy as np
 import pint
 import pytest
 
-from logbook.physics import account, bounds, compare, cost, detect, fuel, power, trend, uncertainty
+from logbook.physics import account, bounds, compare, cost, density, detect, fuel, power, trend, uncertainty
+from logbook.physics.carbon_intensity import carbon_intensity
 
 UNITS = pint.UnitRegistry()
 UNITS.define("florin = [money]")
@@ -85,11 +86,13 @@ FORMULAS: list[tuple[Callable[..., object], list[tuple[object, str]], list[str]]
      [(2e6, "Pa"), (0.03, "m**3"), (12.5, "1/s")], ["W"]),
     (power.specific_consumption, [(6552.0, "kg"), (1.4e11, "J")], [FUEL_PER_ENERGY]),
     (power.brake_efficiency, [(B, FUEL_PER_ENERGY), (LCV, HEAT)], [""]),
+    (power.heat_rate, [(B, FUEL_PER_ENERGY), (LCV, HEAT)], [""]),
     (power.efficiency_of_fuels, [(3950e3, "W"), ([0.17, 0.005], "kg/s"), ([48e6, 42.7e6], HEAT)], [""]),
     (power.propeller_power, [(9.65e6, "W"), (0.97, "")], ["W"]),
     (power.slip, [(3.8, "m"), (125_280, ""), (444_480.0, "m")], ["", "m"]),
     (power.power_from_index, [(9.63e6, "W"), (0.98, ""), (1.03, "")], ["W"]),
     (fuel.blended_calorific_value, [([612.0, 17.5], "kg"), ([48e6, 42.7e6], HEAT)], [HEAT]),
+    (fuel.blended_density, [([40.0, 60.0], "m**3"), ([845.0, 962.0], "kg/m**3")], ["kg/m**3"]),
     (bounds.reversible_bound, [(1850.0, "K"), (300.0, "K")], [""]),
     (bounds.reference_efficiency, [(B, FUEL_PER_ENERGY), (1.01, ""), (LCV, HEAT)], [""]),
     (bounds.consumption_deviation,
@@ -152,6 +155,54 @@ def test_a_formula_that_does_not_close_is_found_out() -> None:
 def test_constants(constant: float, quantity: str, unit: str) -> None:
     """Calculated independently with pint."""
     assert constant == pytest.approx(UNITS.Quantity(quantity).to(unit).magnitude, rel=1e-12)
+
+
+def test_torsion_meter_in_customary_units() -> None:
+    """G I_p theta/L and 2 pi n M with units attached, calculated independently with pint."""
+    outer, inner, length = UNITS.Quantity("580 mm"), UNITS.Quantity("120 mm"), UNITS.Quantity("2.0 m")
+    modulus, speed = UNITS.Quantity("82.6 GPa"), UNITS.Quantity("98/min")
+    torque = modulus * np.pi * (outer**4 - inner**4) / 32 * 0.0011 / length
+    found = power.torsion_power(0.0011, 82.6e9, 0.58, 2.0, 98 / 60, 0.12)
+    assert found[0] == pytest.approx(torque.to("N*m").magnitude)
+    assert found[1] == pytest.approx((2 * np.pi * speed * torque).to("W").magnitude)
+
+
+def test_mean_pressure_in_customary_units() -> None:
+    """P k/(V_s z n) with units attached, calculated independently with pint."""
+    volume = np.pi / 4 * UNITS.Quantity("320 mm") ** 2 * UNITS.Quantity("400 mm")
+    pressure = (UNITS.Quantity("2880 kW") * 2 / (volume * 6 * UNITS.Quantity("750/min"))).to("Pa").magnitude
+    assert power.mean_pressure(2880e3, power.swept_volume(0.32, 0.4), 6, 12.5, "four-stroke") == pytest.approx(pressure)
+
+
+def test_mass_from_counters_in_customary_units() -> None:
+    """Litres times kg/m3 times a bare VCF is kilograms; each meter with its own, calculated independently with pint."""
+    rho = UNITS.Quantity("962 kg/m**3")
+    supply = UNITS.Quantity("12480 L") * rho * density.volume_correction(962.0, 128.0)
+    back = UNITS.Quantity("7610 L") * rho * density.volume_correction(962.0, 137.0)
+    found = density.mass_supply_less_return(12.480, 128.0, 7.610, 137.0, 962.0)
+    assert found == pytest.approx((supply - back).to("kg").magnitude)
+
+
+def test_heat_rate_in_customary_units() -> None:
+    """171 g/kWh at 42.7 MJ/kg in kJ/kWh, calculated independently with pint."""
+    rate = (UNITS.Quantity("171 g/kWh") * UNITS.Quantity("42.7 MJ/kg")).to("kJ/kWh").magnitude
+    assert 3600 * power.heat_rate(171 * power.KG_J_PER_G_KWH, 42.7e6) == pytest.approx(rate)
+
+
+def test_gas_volume_in_customary_units() -> None:
+    """p V/T of the meter over that of the reference, calculated independently with pint."""
+    barometer = UNITS.Quantity("1.005 bar")
+    pressure, temperature = UNITS.Quantity("4.2 bar") + barometer, UNITS.Quantity(18, "degC").to("K")
+    volume = UNITS.Quantity("1250 m**3") * pressure / UNITS.Quantity("1 atm") * UNITS.Quantity("273.15 K") / temperature
+    assert fuel.gas_volume(1250, 5.205e5, 291.15) == pytest.approx(volume.to("m**3").magnitude)
+
+
+def test_carbon_intensity_in_customary_units() -> None:
+    """Tonnes of CO2 over tonnes times miles is g/(t nm), calculated independently with pint."""
+    co2 = UNITS.Quantity("5000 t") * 3.114 + UNITS.Quantity("300 t") * 3.206
+    attained = (co2 / (UNITS.Quantity("60000 t") * UNITS.Quantity("55000 nautical_mile"))).to("g/(t*nautical_mile)")
+    found = carbon_intensity("bulk carrier", 60_000, 2024, 55_000, {"heavy_fuel_oil": 5000, "diesel_oil": 300})
+    assert found.attained == pytest.approx(attained.magnitude)
 
 
 def test_cylinder_constant_in_its_own_units() -> None:

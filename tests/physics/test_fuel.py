@@ -104,6 +104,16 @@ def test_hydrogen_to_carbon(carbon: float, hydrogen: float, y: float) -> None:
 
 
 @pytest.mark.parametrize(
+    ("name", "heating_value"),
+    [("diesel_oil", 42.7), ("light_fuel_oil", 41.2), ("heavy_fuel_oil", 40.2), ("propane", 46.3), ("butane", 45.7),
+     ("ethane", 46.4), ("natural_gas", 48.0), ("methanol", 19.9), ("ethanol", 26.8)],
+)  # fmt: skip
+def test_heating_values_for_reporting(name: str, heating_value: float) -> None:
+    """MEPC.364(79), from memory."""
+    assert fuel.REPORTING_FUELS[name].lower_calorific_value_mj_kg == heating_value
+
+
+@pytest.mark.parametrize(
     ("name", "factor"),
     [("diesel_oil", 3.206), ("light_fuel_oil", 3.151), ("heavy_fuel_oil", 3.114), ("natural_gas", 2.750),
      ("propane", 3.000), ("butane", 3.030), ("ethane", 2.927), ("methanol", 1.375), ("ethanol", 1.913)],
@@ -112,6 +122,7 @@ def test_carbon_factors(name: str, factor: float) -> None:
     """MEPC.364(79); carbon x 44/12 gives all of them to 3 decimals but ethane (2.929 against 2.927)."""
     entry = fuel.REPORTING_FUELS[name]
     assert entry.carbon_factor == factor
+    assert entry.factor_quoted == (name in ("diesel_oil", "light_fuel_oil", "heavy_fuel_oil", "natural_gas"))
     assert entry.carbon * 44 / 12 == pytest.approx(factor, abs=0.0025 if name == "ethane" else 6e-4)
 
 
@@ -125,6 +136,15 @@ def test_two_fuels_at_once() -> None:
     assert 3600 / eta == pytest.approx(7626.14, abs=0.01)
     assert energy[1] / energy.sum() == pytest.approx(0.024806, abs=1e-6)
     assert flow.sum() * fuel.blended_calorific_value(flow, lcv) == pytest.approx(energy.sum())
+
+
+def test_two_fuels_in_one_tank() -> None:
+    """Density by volume, heating value by mass: both keep mass and energy; calculated independently by arithmetic."""
+    volume, rho, lcv = np.array([40.0, 60.0]), np.array([845.0, 962.0]), np.array([42.8e6, 41.4e6])
+    blend = fuel.blended_density(volume, rho)
+    assert blend == pytest.approx(915.2)
+    assert blend * volume.sum() == pytest.approx((volume * rho).sum())
+    assert fuel.blended_calorific_value(volume * rho, lcv) / 1e6 == pytest.approx(41.91705, abs=1e-5)
 
 
 @pytest.mark.parametrize(("reference_k", "expected"), [(273.15, 6024.19), (288.15, 6355.01)])

@@ -80,7 +80,7 @@ def test_brake_efficiency(consumption: float, lcv: float, efficiency: float, hea
     """Calculated independently by arithmetic: 3600/(b LCV)."""
     found = power.brake_efficiency(consumption * G_KWH, lcv * 1e6)
     assert found == pytest.approx(efficiency, abs=1e-6)
-    assert 3600 / found == pytest.approx(heat_rate, abs=0.05)
+    assert 3600 * power.heat_rate(consumption * G_KWH, lcv * 1e6) == pytest.approx(heat_rate, abs=0.05)
 
 
 def test_consumption_for_a_metric_horsepower_hour() -> None:

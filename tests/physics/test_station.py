@@ -1,7 +1,9 @@
 """Figures of a generating set over a period."""
 
+import math
 from collections.abc import Callable
 
+import numpy as np
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
@@ -17,7 +19,6 @@ def test_hours_of_one_set() -> None:
     assert found.available_h == 672
     assert 100 * found.availability == pytest.approx(93.333, abs=1e-3)
     assert 100 * found.service_factor == pytest.approx(84.722, abs=1e-3)
-    assert found.forced_outage_rate is not None
     assert 100 * found.forced_outage_rate == pytest.approx(2.8662, abs=1e-4)
     assert 100 * found.forced_outage_factor == pytest.approx(2.5)
 
@@ -52,14 +53,20 @@ def test_factors_are_shares_of_the_period(service: float, reserve: float, planne
     period = service + reserve + planned + forced
     assert found.availability * period + planned + forced == pytest.approx(period)
     assert found.service_factor <= found.availability + 1e-12
-    assert found.forced_outage_rate is not None
     assert found.forced_outage_rate >= found.forced_outage_factor - 1e-12
 
 
 def test_a_set_that_only_stood_by_has_no_forced_outage_rate() -> None:
     found = station.availability(0, 700, 20, 0)
-    assert found.forced_outage_rate is None
+    assert math.isnan(found.forced_outage_rate)
     assert found.forced_outage_factor == 0
+
+
+def test_months_side_by_side() -> None:
+    """One set of 2880 kW as above, a month without any hours, a month in reserve."""
+    found = station.availability(np.array([610.0, 0, 0]), np.array([62.0, 0, 700]), np.array([30.0, 0, 20]), [18, 0, 0])
+    assert found.availability == pytest.approx([0.93333, math.nan, 700 / 720], abs=1e-5, nan_ok=True)
+    assert found.forced_outage_rate == pytest.approx([0.028662, math.nan, math.nan], abs=1e-6, nan_ok=True)
 
 
 def _output(**changed: float) -> station.Output:
@@ -77,6 +84,7 @@ def _output(**changed: float) -> station.Output:
         (lambda: station.availability(10, -1, 0, 0), "not below zero"),
         (lambda: _output(service_h=0), "above zero"),
         (lambda: _output(net_kwh=1400e3), "net not above gross"),
+        (lambda: _output(service_h=721), "more than those of the period"),
     ],
 )
 def test_what_cannot_be_is_refused_with_what_to_do(call: Callable[[], object], sentence: str) -> None:
