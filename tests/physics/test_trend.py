@@ -200,16 +200,21 @@ def test_shape_of_the_curve() -> None:
     assert found.differs
 
 
-def test_shape_agrees_with_the_covariance_of_scipy() -> None:
+@pytest.mark.parametrize(("wave", "has_memory"), [(0.0, False), (0.3, True)])
+def test_shape_agrees_with_the_covariance_of_scipy(wave: float, has_memory: bool) -> None:
+    """A slow wave in the residuals leaves fewer independent points."""
+    excess = np.array(EXCESS) + wave * np.sin(np.arange(12))
+
     def plane(at: np.ndarray, c0: float, c1: float, c2: float) -> np.ndarray:
         return c0 + c1 * at[0] + c2 * at[1]
 
     at = np.array([np.arange(12), LOADS], float)
-    fit, covariance = curve_fit(plane, at, EXCESS)
-    found = trend.shape_test(at[0], LOADS, EXCESS)
+    fit, covariance = curve_fit(plane, at, excess)
+    found = trend.shape_test(at[0], LOADS, excess)
     assert found.per_load == pytest.approx(fit[2], rel=1e-6)
-    d = np.array(EXCESS) - plane(at, *fit)
+    d = excess - plane(at, *fit)
     rho = max(float(d[1:] @ d[:-1] / (d @ d)), 0)
+    assert (rho > 0.1) is has_memory
     assert found.u_per_load == pytest.approx(np.sqrt(covariance[2, 2] * (1 + rho) / (1 - rho)), rel=1e-5)
 
 

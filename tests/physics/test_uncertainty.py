@@ -132,6 +132,11 @@ def test_repeatability_sees_a_slow_cycle() -> None:
     assert uncertainty.repeatability(DAY_CYCLE) == pytest.approx(0.31823, abs=1e-5)
 
 
+def test_repeatability_sees_a_zigzag() -> None:
+    """+1, -1, +1 ...: about the trend 1.4826, first differences 1.4826 * 2/sqrt(2); calculated by arithmetic."""
+    assert uncertainty.repeatability([1, -1] * 6 + [1]) == pytest.approx(1.4826 * np.sqrt(2))
+
+
 def test_repeatability_does_not_take_a_trend_for_scatter() -> None:
     rng = np.random.default_rng(7)
     noise = rng.normal(0, 0.3, 400)
