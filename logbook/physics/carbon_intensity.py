@@ -90,6 +90,15 @@ class CarbonIntensity:
     bounds: tuple[float, float, float, float]
 
 
+def reference_line(ship_type: str, capacity: float) -> ReferenceLine:
+    """The row of a ship type for a ship's own deadweight [t] or gross tonnage. ValueError: unknown, or no capacity."""
+    if ship_type not in REFERENCE_LINES:
+        raise ValueError(f"ship_type is one of: {', '.join(REFERENCE_LINES)}; not '{ship_type}'.")
+    if not 0 < capacity < inf:
+        raise ValueError("Capacity must be above zero: the deadweight in t, or the gross tonnage.")
+    return next(line for line in REFERENCE_LINES[ship_type] if capacity >= line.least)
+
+
 def carbon_intensity(
     ship_type: str, capacity: float, year: int, distance_nm: float, fuel_t: Mapping[str, float]
 ) -> CarbonIntensity:
@@ -98,16 +107,14 @@ def carbon_intensity(
     Capacity: the ship's own deadweight [t] or gross tonnage; the fixed one of a reference line is looked up and serves
     the line only. Fuel [t] by name of REPORTING_FUELS. Raises ValueError for a name, year or amount that cannot be.
     """
-    if ship_type not in REFERENCE_LINES:
-        raise ValueError(f"ship_type is one of: {', '.join(REFERENCE_LINES)}; not '{ship_type}'.")
+    line = reference_line(ship_type, capacity)
     if year not in REDUCTION_PERCENT:
         raise ValueError(f"Reduction factors are known for {min(REDUCTION_PERCENT)} to {max(REDUCTION_PERCENT)}.")
     unknown = [name for name in fuel_t if name not in REPORTING_FUELS]
     if unknown or not fuel_t:
         raise ValueError(f"Fuel is one of: {', '.join(REPORTING_FUELS)}; found: {', '.join(unknown) or 'none'}.")
-    if not (0 < capacity < inf and 0 < distance_nm < inf) or any(not 0 <= mass < inf for mass in fuel_t.values()):
-        raise ValueError("Capacity and distance must be above zero, fuel not below zero.")
-    line = next(line for line in REFERENCE_LINES[ship_type] if capacity >= line.least)
+    if not 0 < distance_nm < inf or any(not 0 <= mass < inf for mass in fuel_t.values()):
+        raise ValueError("Distance must be above zero, fuel not below zero.")
     co2_t = sum(mass * REPORTING_FUELS[name].carbon_factor for name, mass in fuel_t.items())
     attained = co2_t * 1e6 / (capacity * distance_nm)
     reference = line.a * (line.fixed_capacity or capacity) ** -line.c

@@ -15,8 +15,8 @@ RESIDUAL, DISTILLATE = "residual", "distillate"
 # ISO 8217, informative annex: net and gross constant terms and the coefficients of density squared and density.
 # The residual net line as printed in a public marine engineering course ("8 - Specific energy calculation"), whose
 # third coefficient is misprinted there as 10^-6; the distillate line and both gross lines are from memory.
-_NET = {RESIDUAL: (46.704, 8.802e-6, 3.167e-3), DISTILLATE: (46.423, 8.792e-6, 3.170e-3)}
-_GROSS = {RESIDUAL: (52.190, 8.802e-6), DISTILLATE: (51.916, 8.792e-6)}
+NET_TERMS = {RESIDUAL: (46.704, 8.802e-6, 3.167e-3), DISTILLATE: (46.423, 8.792e-6, 3.170e-3)}
+GROSS_TERMS = {RESIDUAL: (52.190, 8.802e-6), DISTILLATE: (51.916, 8.792e-6)}
 
 
 def _diluted(energy: Any, sulphur: Any, water: Any, ash: Any) -> Any:
@@ -36,7 +36,7 @@ def calorific_value(
     range raise ValueError. Not for gas, methanol or blends with fatty-acid esters: there the laboratory value is
     required. Source: ISO 8217, informative annex (see the note at the constants).
     """
-    if kind not in _NET:
+    if kind not in NET_TERMS:
         raise ValueError(f"The formula knows residual and distillate fuel, not '{kind}': enter the laboratory's value.")
     rho, s, w, a = floats(density15_kg_m3, sulphur_percent, water_percent, ash_percent)
     inputs = (rho, s, w, a)
@@ -49,8 +49,8 @@ def calorific_value(
         "Sulphur 0 to 6, water 0 to 5, ash 0 to 1 % m/m: check the analysis.",
         *inputs,
     )
-    n0, n2, n1 = _NET[kind]
-    g0, g2 = _GROSS[kind]
+    n0, n2, n1 = NET_TERMS[kind]
+    g0, g2 = GROSS_TERMS[kind]
     net = _diluted(n0 - n2 * rho**2 + n1 * rho, s, w, a) - 0.02449 * w
     gross = _diluted(g0 - g2 * rho**2, s, w, a)
     holds = holds & good(
