@@ -5,19 +5,16 @@ from __future__ import annotations
 import argparse
 import json
 import math
+import textwrap
 from typing import TYPE_CHECKING, Any
 
 from logbook.command_line import arguments as shared
 from logbook.command_line.environment import Environment, ExitCode, Refused
 
 if TYPE_CHECKING:
-    from logbook.command_line.calculations.record import Calculation
+    from logbook.command_line.calculations.record import Answer, Calculation, Key, Read
 
-# Canonical units of keys that carry none in their name.
-_CANONICAL = {
-    "temperature": "degC", "density": "kg/m3", "viscosity": "mm2/s", "calorific value": "MJ/kg", "content": "%",
-    "specific use": "g/kWh", "rotation": "rpm", "power": "kW",
-}  # fmt: skip
+_WIDTH = 80
 
 
 def configure(parser: argparse.ArgumentParser) -> None:
@@ -26,8 +23,8 @@ def configure(parser: argparse.ArgumentParser) -> None:
         "example:\n  logbook calc bound hot=565 cold=25\n\nA value may carry a unit (temperature=208degF); lists are"
         " separated by commas."
     )
-    parser.add_argument("name", metavar="NAME", nargs="?")
-    parser.add_argument("values", metavar="key=value", nargs="*")
+    parser.add_argument("name", metavar="NAME", nargs="?", help="the formula; logbook calc alone lists them")
+    parser.add_argument("values", metavar="key=value", nargs="*", help="its inputs; logbook calc NAME names them")
     shared.as_json(parser)
 
 
@@ -35,11 +32,14 @@ def run(arguments: argparse.Namespace, environment: Environment) -> ExitCode:
     import difflib
 
     from logbook.command_line.calculations import calculations
+    from logbook.command_line.calculations.inputs import read
 
     known = calculations()
+    if arguments.json and not arguments.values:
+        raise Refused("--json prints a result: give a NAME and its inputs. The list: logbook calc")
     if arguments.name is None:
         for one in known.values():
-            environment.say(f"{one.name:<20} {' '.join(_keys(one))}")
+            _say(environment, f"{one.name:<20} {' '.join(_short(one))}", " " * 21)
         return ExitCode.DONE
     if arguments.name not in known:
         near = difflib.get_close_matches(arguments.name, known, n=1)
@@ -49,119 +49,130 @@ def run(arguments: argparse.Namespace, environment: Environment) -> ExitCode:
     if not arguments.values:
         _explain(one, environment)
         return ExitCode.DONE
-    inputs = _inputs(one, arguments.values)
-    try:
-        results = {key: _plain(value) for key, value in one.work(inputs).items()}
-    except ValueError as error:
-        raise Refused(f"{one.name}: {error}") from error
+    request = read(one, arguments.values)
+    if request.faults:
+        raise Refused(f"{'; '.join(request.faults)}. See: logbook calc {one.name}")
+    answer = _worked_out(one, {name: found.value for name, found in request.inputs.items()})
     if arguments.json:
-        record = {
-            "name": one.name,
-            "inputs": inputs,
-            "results": results,
-            "steps": list(one.steps),
-            "source": one.source,
-        }
-        environment.say(json.dumps(record))
-        return ExitCode.DONE
-    for step in one.steps:
-        environment.say(f"  {step}")
-    for key, value in results.items():
-        environment.say(f"{key:<22} {_shown(value)} {one.gives.get(key, '')}".rstrip())
-    if one.name == "readings-needed":
-        extra = 2 if int(results["per_side"]) < 6 else 1
-        environment.say(f"The normal formula is a little short: read {int(results['per_side']) + extra} a side.")
-    environment.say(f"source: {one.source}")
-    if one.caution:
-        environment.say(one.caution)
+        environment.say(_as_json(one, request.inputs, answer))
+    else:
+        _show(one, request.inputs, answer, environment)
     return ExitCode.DONE
 
 
-def _keys(one: Calculation) -> list[str]:
-    either = ["|".join(one.one_of)] if one.one_of else []
-    optional = [f"[{key}]" for key in one.takes if key not in one.one_of]
-    return [*one.needs, *either, *([f"{one.many}NAME"] if one.many else []), *optional]
+def _worked_out(one: Calculation, inputs: dict[str, Any]) -> Answer:
+    import numpy as np
 
-
-def _explain(one: Calculation, environment: Environment) -> None:
-    environment.say(f"{one.name} takes: {' '.join(_keys(one))}")
-    environment.say(f"gives: {' '.join(one.gives)}")
-    for step in one.steps:
-        environment.say(f"  {step}")
-    environment.say(f"source: {one.source}")
-    environment.say(f"example:\n  logbook calc {one.example}")
-
-
-def _inputs(one: Calculation, given: list[str]) -> dict[str, Any]:
-    """The values by key, all that is wrong said at once."""
-    import difflib
-
-    inputs: dict[str, Any] = {}
-    faults: list[str] = []
-    for text in given:
-        key, equals, value = text.partition("=")
-        family = one.family(key)
-        if not equals or not value:
-            faults.append(f"'{text}' is not written as key=value")
-        elif family is None:
-            near = difflib.get_close_matches(key, [*one.needs, *one.takes], n=1)
-            hint = f"; did you mean {near[0]}?" if near else ""
-            faults.append(f"{one.name} takes no '{key}'{hint}")
-        else:
-            try:
-                inputs[key] = _value(key, value, family)
-            except ValueError as error:
-                faults.append(str(error))
-    missing = [key for key in one.needs if key not in inputs and not any(text.startswith(f"{key}=") for text in given)]
-    if one.one_of and not any(key in inputs for key in one.one_of):
-        missing.append(" or ".join(one.one_of))
-    if missing:
-        faults.append(f"missing: {', '.join(missing)}")
-    if faults:
-        raise Refused(f"{'; '.join(faults)}. See: logbook calc {one.name}")
-    return inputs
-
-
-def _value(key: str, text: str, family: str) -> Any:
-    from logbook.command_line.calculations.record import LIST, NUMBER, TEXT
-
-    if family == TEXT:
-        return text
-    if family == LIST:
-        return [_number(key, part) for part in text.split(",")]
-    if family == NUMBER:
-        return _number(key, text)
-    from logbook.plant.units import parse_quantity
+    from logbook.command_line.calculations.record import Answer
 
     try:
-        return _number(key, text)
-    except ValueError:
-        found = parse_quantity(text, family, canonical_unit=_CANONICAL.get(family, ""))
-        if found.number is None:
-            said = found.ask.sentence if found.ask else found.refusal
-            raise ValueError(f"{key}: {said}") from None
-        return found.number
-
-
-def _number(key: str, text: str) -> float:
-    try:
-        number = float(text)
-    except ValueError:
-        raise ValueError(f"{key}: '{text}' is no number") from None
-    if not math.isfinite(number):
-        raise ValueError(f"{key}: '{text}' is no finite number")
-    return number
+        with np.errstate(all="ignore"):
+            found = one.work(inputs)
+    except ValueError as error:
+        raise Refused(f"{one.name}: {error}") from error
+    except ArithmeticError as error:
+        raise Refused(f"{one.name}: these numbers are too large or too small to work with: check them.") from error
+    results = {key: _plain(value) for key, value in found.results.items()}
+    if any(isinstance(value, float) and math.isnan(value) for value in results.values()):
+        raise Refused(f"{one.name}: these numbers give no result: check them.")
+    return Answer(results, found.steps, (*found.cautions, *one.cautions))
 
 
 def _plain(value: Any) -> Any:
-    if isinstance(value, str) or value is None:
-        return value
+    """A number as Python's own; one without bound as None, which JSON has a word for."""
     if isinstance(value, list):
         return [_plain(part) for part in value]
-    return int(value) if isinstance(value, int) else float(value)
+    if value is None or isinstance(value, str | int):
+        return value
+    return None if math.isinf(value) else float(value)
 
 
-def _shown(value: Any) -> str:
-    if isinstance(value, list):
-        return " ".join(_shown(part) for part in value)
-    return f"{value:.6g}" if isinstance(value, float) else str(value)
+def _as_json(one: Calculation, inputs: dict[str, Read], answer: Answer) -> str:
+    record = {
+        "name": one.name,
+        "inputs": {name: found.value for name, found in inputs.items()},
+        "results": answer.results,
+        "steps": [*answer.steps, *(f"caution: {caution}" for caution in answer.cautions)],
+        "source": one.source,
+    }
+    return json.dumps(record, allow_nan=False)
+
+
+def _show(one: Calculation, inputs: dict[str, Read], answer: Answer, environment: Environment) -> None:
+    from logbook.command_line.calculations.record import shown
+
+    units = {key.name: key.unit for key in one.keys}
+    wide = max(map(len, [*inputs, *answer.results]))
+    environment.say(one.name)
+    for name, found in inputs.items():
+        unit = units.get(name, one.many.unit if one.many else "")
+        remark = f" ({found.remark})" if found.remark else ""
+        _say(environment, f"  {name:<{wide}}  {shown(found.value)} {unit}".rstrip() + remark, " " * (wide + 4))
+    environment.say("steps")
+    for step in answer.steps:
+        _say(environment, f"  {step}", "    ")
+    environment.say("results")
+    for name, value in answer.results.items():
+        _say(environment, f"  {name:<{wide}}  {shown(value)} {one.gives[name]}".rstrip(), " " * (wide + 4))
+    _say(environment, f"source: {one.source}", "  ")
+    for caution in answer.cautions:
+        _say(environment, f"caution: {caution}", "  ")
+
+
+def _short(one: Calculation) -> list[str]:
+    needed = [key.name for key in one.keys if key.needed]
+    either = ["|".join(one.one_of)] if one.one_of else []
+    together = [f"[{' '.join(one.together)}]"] if one.together else []
+    apart = (*one.one_of, *one.together)
+    optional = [f"[{key.name}]" for key in one.keys if not key.needed and key.name not in apart]
+    return [*needed, *either, *([f"{one.many.name}.NAME"] if one.many else []), *together, *optional]
+
+
+def _explain(one: Calculation, environment: Environment) -> None:
+    keys = [*one.keys, *([one.many] if one.many else [])]
+    names = [f"{key.name}.NAME" if key is one.many else key.name for key in keys]
+    wide = max(map(len, names))
+    environment.say(f"{one.name} takes")
+    for key, name in zip(keys, names, strict=True):
+        _say(environment, f"  {name:<{wide}}  {_takes(one, key)}", " " * (wide + 4))
+    environment.say("and gives")
+    _say(environment, "  " + ", ".join(f"{name} [{unit}]" if unit else name for name, unit in one.gives.items()), "  ")
+    environment.say("formula")
+    for line in one.formula:
+        _say(environment, f"  {line}", "    ")
+    _say(environment, f"source: {one.source}", "  ")
+    for caution in one.cautions:
+        _say(environment, f"caution: {caution}", "  ")
+    environment.say(f"example:\n  logbook calc {one.example}")
+
+
+def _takes(one: Calculation, key: Key) -> str:
+    from logbook.command_line.calculations.inputs import expected
+    from logbook.command_line.calculations.record import LIST, WORD
+
+    if key.kind == WORD:
+        what = "one of: " + "; ".join(key.choices() if key.choices else ())
+    elif key.kind == LIST:
+        what = f"numbers{f' in {key.unit}' if key.unit else ''}, separated by commas"
+    else:
+        what = expected(key)
+    parts = [what, key.says]
+    if key is one.many:
+        parts.append("one or more, of: " + ", ".join(key.choices() if key.choices else ()))
+    elif key.name in one.one_of:
+        parts.append(f"one of {' and '.join(one.one_of)} is needed")
+    elif key.name in one.together:
+        parts.append(f"together with {' and '.join(name for name in one.together if name != key.name)}, or neither")
+    elif not key.needed:
+        parts.append("may be left out")
+    return "; ".join(part for part in parts if part)
+
+
+def _say(environment: Environment, line: str, hanging: str) -> None:
+    """A line of the answer, wrapped for a terminal of 80 columns."""
+    environment.say(
+        textwrap.fill(
+            line, _WIDTH, subsequent_indent=hanging, break_long_words=False, break_on_hyphens=False,
+            replace_whitespace=False,
+        )
+    )  # fmt: skip

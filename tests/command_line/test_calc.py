@@ -119,7 +119,7 @@ def test_a_name_alone_says_what_it_takes(name: str) -> None:
         (["cycle", "p1_bar=3"], "missing: t1_k, compression_ratio, pmax_bar, lambda, lcv, hc_ratio"),
         (["bound", "hot=warm", "cold=2"], "hot:"),
         (["bound", "hot=20", "cold=30"], "hot temperature above the cold"),
-        (["gas", "temperature_k=nan"], "no finite number"),
+        (["gas", "temperature_k=nan"], "temperature_k: 'nan' is no number; expected a number in K"),
         (["calorific-value", "kind=residual", "density15=0.987", "sulphur=1", "water=0", "ash=0"], "0.987 kg/L is 987"),
         (["mean-pressure", "bore_mm=1", "stroke_mm=1", "cylinders=1", "speed_rpm=1", "cycle=two-stroke"], "power_kw or pressure_bar"),
         (["bound", "hot"], "key=value"),
