@@ -113,7 +113,8 @@ def _show(one: Calculation, inputs: dict[str, Read], answer: Answer, environment
         _say(environment, f"  {step}", "    ")
     environment.say("results")
     for name, value in answer.results.items():
-        _say(environment, f"  {name:<{wide}}  {shown(value)} {one.gives[name]}".rstrip(), " " * (wide + 4))
+        unit = "" if value is None else one.gives[name]
+        _say(environment, f"  {name:<{wide}}  {shown(value)} {unit}".rstrip(), " " * (wide + 4))
     _say(environment, f"source: {one.source}", "  ")
     for caution in answer.cautions:
         _say(environment, f"caution: {caution}", "  ")

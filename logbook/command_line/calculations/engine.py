@@ -16,12 +16,14 @@ def _ambient_correction(i: Inputs) -> Answer:
 
     e, p, t = exponents(i["engine"]), i["pressure_kpa"], i["temperature"]
     eta, coolant = i.get("mechanical_efficiency", MECHANICAL_EFFICIENCY), i.get("coolant")
+    if not 30 < p < 120:
+        raise ValueError("pressure_kpa is the barometer in kPa, between 30 and 120: 1013 mbar is 101.3.")
     vapour = vapour_pressure(t, i["humidity"]) if "humidity" in i else None
     found = iso_3046(i["engine"], p * 1e3, t, vapour, coolant, eta)
     if e.a and vapour is not None:
         pressures = f"({p:g} - {vapour / 1e3:.4g})/(100 - {REFERENCE_VAPOUR_PRESSURE_PA / 1e3:.4g})"
     else:
-        pressures = f"({p:g}/100)"
+        pressures = f"{p:g}/100"
     terms = [f"[{pressures}]^{e.m:g}", f"(298/{t + 273:g})^{e.n:g}"]
     if e.s and coolant is not None:
         terms.append(f"(298/{coolant + 273:g})^{e.s:g}")
@@ -185,6 +187,8 @@ def _bound(i: Inputs) -> Answer:
     from logbook.physics.bounds import reversible_bound
 
     hot, cold = i["hot"] + ZERO_C_K, i["cold"] + ZERO_C_K
+    if not hot > cold > 0:
+        raise ValueError("hot must be above cold, both in degC and above -273.15.")
     found = reversible_bound(hot, cold)
     return Answer(
         {"reversible_bound": found},
@@ -199,6 +203,8 @@ def _exergy(i: Inputs) -> Answer:
     from logbook.physics.exergy import exhaust_exergy
 
     t, t0 = i["temperature"] + ZERO_C_K, i["ambient"] + ZERO_C_K
+    if min(i["temperature"], i["ambient"]) < -73 or max(i["temperature"], i["ambient"]) > 2000:
+        raise ValueError("temperature and ambient are in degC, between -73 and 2000.")
     pressed = "pressure_bar" in i
     if pressed and min(i["pressure_bar"], i["ambient_pressure_bar"]) <= 0:
         raise ValueError("Both pressures are absolute and above zero.")

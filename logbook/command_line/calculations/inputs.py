@@ -44,7 +44,7 @@ def _key(one: Calculation, name: str) -> Key | str:
         choices = one.many.choices() if one.many.choices else ()
         if word in choices:
             return replace(one.many, name=name)
-        return f"'{word}' is no {one.many.name} here{_near(word, choices)}; there are: {', '.join(choices)}"
+        return f"{one.many.name}: '{word}' is none of: {'; '.join(choices)}{_near(word, choices)}"
     names = [*one.names, *([f"{one.many.name}.NAME"] if one.many else [])]
     return f"{one.name} takes no '{name}'{_near(name, names)}"
 
@@ -77,7 +77,7 @@ def _read(key: Key, text: str) -> Read:
     if key.kind == WORD:
         choices = key.choices() if key.choices else (text,)
         if text not in choices:
-            raise ValueError(f"'{text}' is none of its words{_near(text, choices)}; there are: {'; '.join(choices)}")
+            raise ValueError(f"'{text}' is none of: {'; '.join(choices)}{_near(text, choices)}")
         return Read(text)
     if key.kind == LIST:
         return Read([_number(key, part.strip()).value for part in text.split(",")])
