@@ -61,16 +61,18 @@ def run(arguments: argparse.Namespace, environment: Environment) -> ExitCode:
 
 
 def _worked_out(one: Calculation, inputs: dict[str, Any]) -> Answer:
-    import numpy as np
+    import warnings
 
     from logbook.command_line.calculations.record import Answer
 
     try:
-        with np.errstate(all="ignore"):
+        with warnings.catch_warnings():
+            # Numbers that overflow on the way are refused, not warned of.
+            warnings.simplefilter("error", RuntimeWarning)
             found = one.work(inputs)
     except ValueError as error:
         raise Refused(f"{one.name}: {error}") from error
-    except ArithmeticError as error:
+    except (ArithmeticError, RuntimeWarning) as error:
         raise Refused(f"{one.name}: these numbers are too large or too small to work with: check them.") from error
     results = {key: _plain(value) for key, value in found.results.items()}
     if any(isinstance(value, float) and math.isnan(value) for value in results.values()):

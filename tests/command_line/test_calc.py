@@ -422,17 +422,44 @@ def test_your_makers_own_figures_carry_no_caution_about_memory() -> None:
     assert "memory" not in out
 
 
-@settings(max_examples=150, deadline=None)
-@given(st.sampled_from(list(NAMES)), st.lists(st.text(max_size=12) | st.floats().map(repr), min_size=9, max_size=9))
-def test_whatever_is_typed_ends_in_an_answer_or_a_sentence(name: str, texts: list[str]) -> None:
-    one = calculations()[name]
-    typed = [f"{key}={text}" for key, text in zip(one.names, texts, strict=False)]
-    code, out, err = run(name, "--json", "--", *typed)
+EXTREMES = (
+    "0",
+    "-1",
+    "5%",
+    "3 degC",
+    "1e-300",
+    "1e300",
+    "-1e308",
+    "1e18",
+    "1e-9",
+    "-273.15",
+    "nan",
+    "inf",
+    "1_000",
+    "",
+)
+
+
+@settings(max_examples=200, deadline=None)
+@given(
+    st.sampled_from([(case[0], case[1]) for case in CASES]),
+    st.lists(st.tuples(st.integers(0, 9), st.sampled_from(EXTREMES) | st.text(max_size=8)), max_size=2),
+)
+def test_whatever_is_typed_ends_in_an_answer_or_a_sentence(
+    case: tuple[str, str], changes: list[tuple[int, str]]
+) -> None:
+    """Some inputs of a case replaced by extremes or by anything at all."""
+    typed = shlex.split(case[1])
+    for place, text in changes:
+        typed[place % len(typed)] = f"{typed[place % len(typed)].partition('=')[0]}={text}"
+    code, out, err = run(case[0], *typed, "--json")
     if code == 0:
         json.loads(out, parse_constant=lambda constant: pytest.fail(f"{constant} is no JSON"))
     else:
+        assert changes
         assert code == 2
         assert err.startswith("logbook: ")
+        assert "unrecognized" not in err
 
 
 def test_calc_loads_physics_and_no_more() -> None:
