@@ -208,9 +208,9 @@ def _take_off(engine: Engine, table: Table) -> tuple[Floats, Floats]:
 def _through_take_off(engine: Engine, electrical: Floats) -> Floats:
     assert engine.shaft_generator is not None
     eta = efficiency_at(engine.shaft_generator.efficiency, np.abs(electrical) / engine.shaft_generator.rated_power_kw)
+    given = np.asarray(brake_power_with_take_off(0.0, np.maximum(electrical, 0.0), eta))
     # Taken in, as a motor, less arrives at the shaft than was drawn from the board.
-    eta = np.where(electrical < 0, 1 / eta, eta)
-    return np.asarray(brake_power_with_take_off(0.0, electrical, eta))
+    return np.where(electrical < 0, electrical * eta, given)
 
 
 def _brake_energy(

@@ -81,6 +81,8 @@ def ambient_of(engine: Engine, table: Table, barometer_pa: Floats, humidity_perc
         )
         factor, power = np.asarray(found.beta), np.asarray(found.alpha)
         needs_coolant = exponents.s != 0
+    # A temperature or barometer that cannot be gives no factor: for the correction it was not read.
+    missing |= ~np.isfinite(factor)
     flags.add("correction_input_missing", missing)
     flags.add("coolant_not_read", ~missing & ~np.isfinite(coolant) & needs_coolant)
     return Ambient(barometer_pa, suction, np.where(missing, np.nan, factor), power)

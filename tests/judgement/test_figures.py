@@ -128,6 +128,23 @@ def test_take_off_counts_as_brake_power() -> None:
     assert "no_power_reading" in without["flags"]
 
 
+def test_a_take_off_that_drives_the_shaft_counts_negative() -> None:
+    """400 kW drawn as a motor at 0.93 put 372 kW on the shaft: 8200 - 372 kW brake; arithmetic."""
+    fitted = ship(shaft_generator=ShaftGenerator(1000, EfficiencyCurve((100.0,), (0.93,))))
+    more = {"shaft_power": 8200.0, "shaft_generator_power": -400.0}
+    row = last(pair(after(4, 5400, **more), begin={**BASE, **more}), fitted)
+    assert row["brake_power_kw"] == pytest.approx(8200 - 372)
+    assert row["comparable"], row["flags"]
+
+
+def test_an_impossible_air_temperature_is_said() -> None:
+    air = {"compressor_inlet_temperature.1": 130.0}
+    row = last(pair(after(4, 4 * FUEL_H, **air), begin={**BASE, **air}))
+    assert np.isnan(row["excess_gap"])
+    assert "correction_input_missing" in row["flags"].split(";")
+    assert not row["comparable"]
+
+
 FLAGGED = {
     "no_fuel_reading": {"fuel_meter_supply.ME_in": None},
     "counter_open_question": {"fuel_meter_supply.ME_in": 40_000.0},
